@@ -3,7 +3,7 @@
 Data only, no algorithms: the mathematics of a proof object is recomputed by
 `certgen.checker`, found by `certgen.prover`.  The constructors enforce the shape
 that the format demands (non-vacuity, lowest terms, stated order); they raise
-ClaimError.  In all docstrings r = a/b is the claim's equation y' = r*y.
+InvariantError.  In all docstrings r = a/b is the claim's equation y' = r*y.
 """
 
 from __future__ import annotations
@@ -14,7 +14,7 @@ from fractions import Fraction
 from typing import ClassVar, Literal
 
 from certgen.claim import FirstOrderClaim, Power
-from certgen.errors import ClaimError
+from certgen.errors import InvariantError
 from certgen.polynomial import Polynomial
 
 __all__ = [
@@ -45,28 +45,32 @@ __all__ = [
 Verdict = Literal["proved", "refuted", "undecided"]
 
 
-def _require(condition: bool, message: str) -> None:
+def _require(condition: bool, expected: str, code: str = "not-canonical") -> None:
     if not condition:
-        raise ClaimError(message)
+        raise InvariantError(code, expected)
+
+
+def _require_content(condition: bool, expected: str) -> None:
+    _require(condition, expected, "vacuous")
 
 
 def _require_base(polynomial: Polynomial, name: str) -> None:
+    _require_content(not polynomial.is_constant, f"a non-constant {name}")
     _require(
-        polynomial.is_primitive and not polynomial.is_constant,
-        f"the {name} must be a non-constant primitive polynomial in Z[x] with "
-        "positive leading coefficient",
+        polynomial.is_primitive,
+        f"a {name} that is primitive in Z[x] with positive leading coefficient",
     )
 
 
 def _require_sorted(items: Iterable[Polynomial], name: str) -> None:
     keys = [item.sort_key for item in items]
-    _require(keys == sorted(set(keys)), f"the {name} must be sorted and distinct")
+    _require(keys == sorted(set(keys)), f"{name} that are sorted and distinct")
 
 
 def _require_reduced(polynomial: Polynomial, p: int, name: str) -> None:
     _require(
         polynomial.is_integral and all(0 <= c < p for c in polynomial.numerators),
-        f"the {name} must have coefficients from 0 to p - 1",
+        f"a {name} with coefficients from 0 to p - 1",
     )
 
 
@@ -83,7 +87,7 @@ class PartialFraction:
 
     def __post_init__(self) -> None:
         _require_base(self.factor, "factor")
-        _require(self.residue != 0, "a residue is zero")
+        _require_content(self.residue != 0, "a non-zero residue")
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -98,13 +102,13 @@ class MinimalPolynomial:
     denominator: tuple[Power, ...]
 
     def __post_init__(self) -> None:
-        _require(self.degree >= 1, "the degree must be at least 1")
+        _require_content(self.degree >= 1, "a degree of at least 1")
         for side in (self.numerator, self.denominator):
             _require_sorted((power.base for power in side), "bases")
             for power in side:
                 _require(
                     power.exponent > 0 and power.exponent.denominator == 1,
-                    "the exponents of the minimal polynomial must be positive integers",
+                    "positive integers as exponents of the minimal polynomial",
                 )
 
 
@@ -116,7 +120,7 @@ class Eisenstein:
     constant: int
 
     def __post_init__(self) -> None:
-        _require(self.constant >= 1, "an Eisenstein constant is positive")
+        _require_content(self.constant >= 1, "a positive Eisenstein constant")
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -142,8 +146,8 @@ class AlgebraicSolution:
         _require_sorted((power.base for power in self.solution), "bases")
         _require_sorted((term.factor for term in self.partial_fractions), "factors")
         exponents = [power.exponent for power in self.solution]
-        _require(len(exponents) == len(set(exponents)), "an exponent stands twice")
-        _require(self.degree >= 1, "the degree must be at least 1")
+        _require(len(exponents) == len(set(exponents)), "one base for each exponent")
+        _require_content(self.degree >= 1, "a degree of at least 1")
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -160,9 +164,9 @@ class Disagreement:
 
     def __post_init__(self) -> None:
         _require_base(self.factor, "factor")
-        _require(
+        _require_content(
             self.residue_of_equation != self.residue_of_closed_form,
-            "the two residues are equal",
+            "two different residues",
         )
 
 
@@ -189,7 +193,7 @@ class PolynomialPart:
     quotient: Polynomial
 
     def __post_init__(self) -> None:
-        _require(not self.quotient.is_zero, "the polynomial part is zero")
+        _require_content(not self.quotient.is_zero, "a non-zero polynomial part")
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -203,7 +207,7 @@ class MultiplePole:
 
     def __post_init__(self) -> None:
         _require_base(self.factor, "factor")
-        _require(self.order >= 2, "a multiple pole has order at least 2")
+        _require_content(self.order >= 2, "an order of at least 2")
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -266,21 +270,18 @@ class CounterPrime:
     witness: PolynomialPartModP | MultiplePoleModP | ResidueOutsidePrimeField
 
     def __post_init__(self) -> None:
-        _require(self.p >= 2, "p must be a prime")
-        factor = getattr(self.witness, "factor", None)
-        if factor is not None:
-            _require_reduced(factor, self.p, "factor")
-            _require(
-                factor.degree >= 1 and factor.numerators[-1] == 1,
-                "the factor must be monic and not constant",
-            )
-        residue = getattr(self.witness, "residue", None)
-        if residue is not None:
+        _require(self.p >= 2, "a prime")
+        if isinstance(self.witness, PolynomialPartModP):
+            return
+        factor = self.witness.factor
+        _require_reduced(factor, self.p, "factor")
+        _require_content(factor.degree >= 1, "a non-constant factor")
+        _require(factor.numerators[-1] == 1, "a monic factor")
+        if isinstance(self.witness, ResidueOutsidePrimeField):
+            residue = self.witness.residue
             _require_reduced(residue, self.p, "residue")
-            _require(
-                0 < residue.degree < factor.degree,
-                "the residue must be non-constant of degree below its factor's",
-            )
+            _require_content(residue.degree > 0, "a non-constant residue")
+            _require(residue.degree < factor.degree, "a residue of lower degree")
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -294,10 +295,8 @@ class PCurvature:
     numerator: Polynomial
 
     def __post_init__(self) -> None:
-        _require(
-            not self.numerator.is_zero and self.numerator.is_integral,
-            "the p-curvature is zero or not reduced",
-        )
+        _require_content(not self.numerator.is_zero, "a p-curvature that is not zero")
+        _require(self.numerator.is_integral, "coefficients from 0 to p - 1")
 
 
 # --------------------------------------------------------------------------
@@ -312,7 +311,8 @@ class DensityWitness:
     order: int
 
     def __post_init__(self) -> None:
-        _require(self.p >= 2 and self.order >= 2, "p is a prime, the order at least 2")
+        _require(self.p >= 2, "a prime")
+        _require_content(self.order >= 2, "an order of at least 2")
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -328,10 +328,13 @@ class DensityBound:
     witnesses: tuple[DensityWitness, ...]
 
     def __post_init__(self) -> None:
-        _require(0 < self.bound <= 1, "a density lies between 0 and 1")
-        _require((self.bound == 1) == (not self.witnesses), "bound 1 has no witnesses")
+        _require_content(0 < self.bound <= 1, "a density above 0 and at most 1")
+        _require(
+            (self.bound == 1) == (not self.witnesses),
+            "witnesses for a bound below 1, and none for 1",
+        )
         primes = [witness.p for witness in self.witnesses]
-        _require(primes == sorted(set(primes)), "the witnesses must be sorted")
+        _require(primes == sorted(set(primes)), "ascending, distinct primes")
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -343,7 +346,7 @@ class SquarefreeFactor:
 
     def __post_init__(self) -> None:
         _require_base(self.factor, "factor")
-        _require(self.multiplicity >= 1, "a multiplicity is at least 1")
+        _require_content(self.multiplicity >= 1, "a multiplicity of at least 1")
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -370,8 +373,11 @@ class NoAlgebraicSolution:
         _require_sorted((f.factor for f in self.squarefree_decomposition), "factors")
         order = (PolynomialPart, MultiplePole, IrrationalResidue)
         ranks = [order.index(type(item)) for item in self.obstructions]
-        _require(ranks == sorted(ranks), "the obstructions are not in order")
-        _require(ranks.count(0) <= 1, "the polynomial part stands twice")
+        _require(
+            ranks == sorted(ranks),
+            "polynomial part, multiple poles and irrational residues in this order",
+        )
+        _require(ranks.count(0) <= 1, "at most one polynomial part")
         for kind in (MultiplePole, IrrationalResidue):
             _require_sorted(
                 (o.factor for o in self.obstructions if isinstance(o, kind)),

@@ -11,9 +11,10 @@ import hashlib
 import re
 from dataclasses import dataclass
 from fractions import Fraction
+from math import gcd
 from typing import ClassVar, Literal, get_args
 
-from certgen.errors import ClaimError, LimitError, shorten
+from certgen.errors import ClaimError, InvariantError, LimitError, shorten
 from certgen.polynomial import Polynomial, write_polynomial, write_rational
 
 __all__ = [
@@ -95,13 +96,15 @@ class Power:
     exponent: Fraction
 
     def __post_init__(self) -> None:
-        if self.base.is_constant or not self.base.is_primitive:
-            raise ClaimError(
-                f"the base '{shorten(self.base)}' is not a non-constant primitive "
-                "polynomial in Z[x] with positive leading coefficient"
+        if self.base.is_constant:
+            raise InvariantError("vacuous", "a non-constant base")
+        if not self.base.is_primitive:
+            raise InvariantError(
+                "not-canonical",
+                "a base that is primitive in Z[x] with positive leading coefficient",
             )
         if self.exponent == 0:
-            raise ClaimError("an exponent is zero")
+            raise InvariantError("vacuous", "a non-zero exponent")
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -119,13 +122,15 @@ class FirstOrderEquation:
     def __post_init__(self) -> None:
         a, b = self.numerator, self.denominator
         if b.is_zero:
-            raise ClaimError("the denominator of the equation is zero")
+            raise InvariantError("vacuous", "an equation whose coefficient of y' is not zero")
         if not (a.is_integral and b.is_integral):
-            raise ClaimError("the coefficients of the equation are not integers")
-        if b.numerators[-1] < 0 or Polynomial(a.numerators + b.numerators).content != 1:
-            raise ClaimError("the equation is not in lowest terms with lc(b) > 0")
+            raise InvariantError("not-canonical", "an equation with integer coefficients")
+        if b.numerators[-1] < 0 or gcd(a.content, b.content) != 1:
+            raise InvariantError(
+                "not-canonical", "an equation in lowest terms with lc(b) > 0"
+            )
         if a.is_zero and b.numerators != (1,):
-            raise ClaimError("y' = 0 is written with denominator 1")
+            raise InvariantError("not-canonical", "the equation (1)*y' = (0)*y")
 
     def __str__(self) -> str:
         """The canonical text, always in x and y: `(b)*y' = (a)*y`."""
@@ -184,7 +189,9 @@ class FirstOrderClaim:
             )
         keys = [power.base.sort_key for power in solution]
         if keys != sorted(set(keys)):
-            raise ClaimError("the bases of the solution are not sorted and distinct")
+            raise InvariantError(
+                "not-canonical", "a solution whose bases are sorted and distinct"
+            )
 
 
 def default_id(equation: FirstOrderEquation, asserts: str, subject: str,

@@ -4,6 +4,7 @@
     |-- UnusableInputError          2   the input cannot be used at all
     |   |-- ExpressionError             an expression or equation, with its place
     |   |-- ClaimError                  a claim, or a file of claims
+    |   |   `-- InvariantError            a value that its type does not admit
     |   |-- MalformedError              stored text, with its JSON path
     |   `-- FileError                   a file or folder that cannot be read or written
     |-- RejectedError               1   a stored statement is false or unsupported by its proof
@@ -23,6 +24,7 @@ __all__ = [
     "DefectError",
     "ExpressionError",
     "FileError",
+    "InvariantError",
     "LimitError",
     "MalformedError",
     "RejectedError",
@@ -85,6 +87,19 @@ class ExpressionError(UnusableInputError):
 
 class ClaimError(UnusableInputError):
     """A claim that cannot be stated, or a file of claims that cannot be read."""
+
+
+class InvariantError(ClaimError):
+    """A mathematical value that its type does not admit.
+
+    `code` is "vacuous" (a zero exponent, a constant base, degree 0: values that
+    would make an identity say nothing) or "not-canonical" (order, repetition,
+    lowest terms).  In stored text it is a rejection with this code.
+    """
+
+    def __init__(self, code: str, message: str) -> None:
+        self.code = code
+        super().__init__(message)
 
 
 class MalformedError(UnusableInputError):

@@ -154,7 +154,8 @@ def read_natural(digits: str) -> int:
     if len(digits) <= _CHUNK:
         return int(digits)
     low = len(digits) // 2
-    return read_natural(digits[:-low]) * 10**low + read_natural(digits[-low:])
+    shift: int = 10**low
+    return read_natural(digits[:-low]) * shift + read_natural(digits[-low:])
 
 
 def write_integer(value: int) -> str:

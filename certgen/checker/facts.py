@@ -57,9 +57,9 @@ class AlgebraicFacts:
 
     `numerators` are the n_i = N*rho_i; `derivatives` the v_i'; `products` the
     n_i*v_i'*V/v_i expanded, and `identity` both sides N*a of the second
-    identity, or None where the degree of b is above 40.  `scaled` is True where
-    all residues are integers (degree 1).  `squarefree_degree` is deg V;
-    `strip` the first primes.
+    identity, or None where the degree of b is above 40 (`spot` is None above 200 or
+    where b vanishes at all points tried).  `squarefree_degree` is deg V; `strip` the
+    first primes, empty where the degree of b is above 60.
     """
 
     degree: int
