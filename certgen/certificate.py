@@ -319,9 +319,9 @@ class DensityWitness:
 class DensityBound:
     """The counter-primes have density at least `bound`.
 
-    `bound` 1 without witnesses: all good primes but finitely many (polynomial
-    part or multiple pole).  Otherwise 1 - 1/M, M the least common multiple of
-    the orders of the witnesses.
+    Without witnesses `bound` is 1 (polynomial part or multiple pole: all good
+    primes but finitely many) or 1/2 (simple poles with an irrational residue).
+    Otherwise 1 - 1/M, M the least common multiple of the orders of the witnesses.
     """
 
     bound: Fraction
@@ -329,10 +329,6 @@ class DensityBound:
 
     def __post_init__(self) -> None:
         _require_content(0 < self.bound <= 1, "a density above 0 and at most 1")
-        _require(
-            (self.bound == 1) == (not self.witnesses),
-            "witnesses for a bound below 1, and none for 1",
-        )
         primes = [witness.p for witness in self.witnesses]
         _require(primes == sorted(set(primes)), "ascending, distinct primes")
 

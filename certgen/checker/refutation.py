@@ -60,7 +60,7 @@ P_CURVATURE_LIMIT = 40_000
 RESIDUE_POLYNOMIAL_LIMIT = 400
 """The largest product of the degrees of a factor and of its residue polynomial."""
 
-FROBENIUS_ORDER_LIMIT = 1_000
+FROBENIUS_ORDER_LIMIT = 100
 """The largest order of Frobenius in a witness of the density bound."""
 
 
@@ -343,16 +343,18 @@ def _check_density(
 
     With simple poles and no polynomial part a good prime q is a counter-prime
     unless Frobenius at q fixes the residues.  They generate a Galois extension of
-    Q whose group contains, for each witness, an element of order a multiple of the
-    witness's; so the lcm M of these orders divides the order of the group.
+    Q whose group is not trivial, for there is a counter-prime, and contains for
+    each witness an element whose order is a multiple of the witness's: the order of
+    the group is at least 2 and at least the lcm M of the witnesses' orders.
     """
     if not simple:
-        reject_unless(value.bound == 1, "density", f"{path}.bound", "1", value.bound)
+        reject_unless(
+            value.bound == 1 and not value.witnesses, "density", path,
+            "bound 1 without witnesses", value.bound,
+        )  # fmt: skip
         return
-    reject_unless(
-        bool(value.witnesses), "density", f"{path}.witnesses", "witnesses", "none"
-    )
     bound = 1 - Fraction(1, lcm(*(w.order for w in value.witnesses)))
+    bound = max(bound, Fraction(1, 2))
     reject_unless(
         value.bound == bound, "density", f"{path}.bound", show(bound), value.bound
     )

@@ -1,0 +1,1 @@
+"""Benchmarks: `python -m tests.bench` prints ours beside FLINT, sympy and PARI."""
