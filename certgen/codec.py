@@ -106,7 +106,8 @@ def _read_text(data: bytes | str) -> str:
     return data
 
 
-_TOKEN = re.compile(r'"(?:[^"\\]|\\.)*"|[\[{]|[\]}]')
+# a string that does not end is one token too: the scan stays linear
+_TOKEN = re.compile(r'"(?:[^"\\]|\\.)*"?|[\[{]|[\]}]')
 
 
 def _check_nesting(text: str) -> None:

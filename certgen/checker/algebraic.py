@@ -29,7 +29,7 @@ from certgen.checker.common import (
 )
 from certgen.checker.primes import radical
 from certgen.claim import FirstOrderEquation, Power
-from certgen.errors import RejectedError
+from certgen.errors import LimitError, RejectedError
 
 __all__ = [
     "check_algebraic_solution",
@@ -41,10 +41,29 @@ __all__ = [
 
 Pair = tuple[ZPoly, ZPoly]
 
+DEGREE_BITS = 66_440
+"""A common denominator beyond this has more than DIGITS_LIMIT digits."""
+
+EISENSTEIN_BITS = 200_000
+"""The largest product of the degree of V and the bits of the point."""
+
+TAYLOR_DEGREE = 100
+"""Up to this degree of a base its Taylor coefficients are looked at."""
+
 
 def common_degree(powers: tuple[Power, ...]) -> int:
-    """The least common denominator of the exponents (1 for none)."""
-    return lcm(*(power.exponent.denominator for power in powers))
+    """The least common denominator of the exponents (1 for none).
+
+    Raises LimitError where it could not be stored, before it grows further.
+    """
+    degree = 1
+    for power in powers:
+        degree = lcm(degree, power.exponent.denominator)
+        if degree.bit_length() > DEGREE_BITS:
+            raise LimitError(
+                f"the common denominator of the exponents has more than {DEGREE_BITS} bits"
+            )
+    return degree
 
 
 def logarithmic_derivative(arithmetic: Arithmetic, powers: tuple[Power, ...]) -> Pair:
@@ -156,6 +175,11 @@ def _check_eisenstein(
     divides L^j * v^(j)(x0)/j! for all j >= 1, since d^k * e^k * binom(n/d, k) is
     an integer.  It does when c divides L.
     """
+    size = v.degree * value.point.bit_length()
+    reject_unless(
+        size <= EISENSTEIN_BITS, "eisenstein-point", f"{path}.point",
+        f"a point whose bits times the degree are at most {EISENSTEIN_BITS}", size,
+    )  # fmt: skip
     reject_unless(
         v.value(value.point) != 0, "eisenstein-point", f"{path}.point",
         "an integer where no base vanishes", value.point,
@@ -163,16 +187,29 @@ def _check_eisenstein(
     for power in solution:
         base, d = to_z(arithmetic, power.base), power.exponent.denominator
         c = base.value(value.point) * (d * radical(d) if d > 1 else 1)
-        if value.constant % c == 0:
-            continue
-        scale = 1
-        for taylor in base.shifted(value.point).coefficients()[1:]:
-            scale *= value.constant
-            reject_unless(
-                scale * taylor % c == 0, "eisenstein-constant", f"{path}.constant",
-                f"a constant that suffices for the base with exponent {show(power.exponent)}",
-                value.constant,
-            )  # fmt: skip
+        reject_unless(
+            _suffices(base, value.point, value.constant, c), "eisenstein-constant",
+            f"{path}.constant",
+            f"a constant that suffices for the base with exponent {show(power.exponent)}",
+            value.constant,
+        )  # fmt: skip
+
+
+def _suffices(base: ZPoly, point: int, constant: int, c: int) -> bool:
+    """Whether c divides constant^j * v^(j)(point)/j! for all j >= 1, v the base.
+
+    It does when c divides the constant; above TAYLOR_DEGREE nothing else is tried.
+    """
+    if constant % c == 0:
+        return True
+    if base.degree > TAYLOR_DEGREE:
+        return False
+    scale = 1
+    for taylor in base.shifted(point).coefficients()[1:]:
+        scale = scale * constant % c
+        if scale * taylor % c != 0:
+            return False
+    return True
 
 
 # --------------------------------------------------------------------------

@@ -1,0 +1,152 @@
+"""What every appendix says, whatever its proof object: claim, verdict, recheck."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from certgen.appendix.formulas import Printer, prose, symbolic_product, typewriter
+from certgen.appendix.symbols import Symbols, choose_symbols
+from certgen.checker import CheckedCertificate
+from certgen.claim import FirstOrderClaim
+from certgen.notation import read_equation
+from certgen.notation.latex_writer import Latex, equation, fraction, rational
+from certgen.polynomial import Polynomial, write_polynomial
+
+__all__ = ["ClaimedPower", "Head", "build_head", "printer_of"]
+
+AS_WRITTEN_PRINTED = 600
+"""The author's text of the equation is repeated up to this many characters."""
+
+FRACTION_PRINTED = 36
+"""r = a/b is shown as one fraction when both sides are at most this long."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class ClaimedPower:
+    """One factor of the closed form that the author claims."""
+
+    index: Latex
+    base: Latex
+    exponent: Latex
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Head:
+    """The claim, its equation in the author's letters, and how to check again."""
+
+    key: Latex
+    id: str
+    title: Latex | None
+    note: Latex | None
+    every: bool
+    algebraic: bool
+    proved: bool
+    zero: bool
+    equation: Latex
+    as_fraction: Latex | None
+    as_written: Latex | None
+    as_read: Latex | None
+    a: Latex
+    b: Latex
+    claimed: Latex | None
+    claimed_powers: tuple[ClaimedPower, ...]
+    claimed_as_written: Latex | None
+    file: Latex
+    command: Latex
+    module_command: Latex
+    digest: Latex
+    sym: Symbols
+
+
+def printer_of(checked: CheckedCertificate) -> Printer:
+    """Return the printer in the author's variable."""
+    claim = checked.certificate.claim
+    return Printer(claim.letters.variable, f"{claim.id}.json")
+
+
+def build_head(checked: CheckedCertificate) -> Head:
+    """Return the context that all templates share."""
+    claim = checked.certificate.claim
+    printer, sym = printer_of(checked), choose_symbols(claim.letters)
+    name = f"{claim.id}.json"
+    claimed, powers = _claimed(claim, printer, sym)
+    return Head(
+        key=Latex(claim.id),
+        id=claim.id,
+        title=prose(claim.title) if claim.title else None,
+        note=prose(claim.note) if claim.note else None,
+        every=claim.subject == "every solution",
+        algebraic=claim.asserts == "algebraic",
+        proved=checked.certificate.verdict == "proved",
+        zero=claim.equation.numerator.is_zero,
+        equation=_equation(claim, sym),
+        as_fraction=_as_fraction(claim),
+        as_written=_as_written(claim.as_written),
+        as_read=_as_read(claim),
+        a=printer.polynomial("a", claim.equation.numerator),
+        b=printer.polynomial("b", claim.equation.denominator),
+        claimed=claimed,
+        claimed_powers=powers,
+        claimed_as_written=_as_written(claim.solution_as_written),
+        file=typewriter(name),
+        command=typewriter(f"certgen check {name}"),
+        module_command=typewriter(f"python -m certgen.checker {name}"),
+        digest=_digest(checked.digest),
+        sym=sym,
+    )
+
+
+def _short(value: Polynomial) -> bool:
+    return len(write_polynomial(value)) <= FRACTION_PRINTED
+
+
+def _equation(claim: FirstOrderClaim, sym: Symbols) -> Latex:
+    a, b = claim.equation.numerator, claim.equation.denominator
+    if len(write_polynomial(a)) + len(write_polynomial(b)) <= 2_000:
+        return Latex(f"${equation(a, b, claim.letters)}$")
+    return Latex(f"${sym.b}\\,{sym.y}' = {sym.a}\\,{sym.y}$")
+
+
+def _as_fraction(claim: FirstOrderClaim) -> Latex | None:
+    a, b = claim.equation.numerator, claim.equation.denominator
+    if a.is_zero or b.is_constant or not (_short(a) and _short(b)):
+        return None
+    return fraction(a, b, claim.letters.variable)
+
+
+def _as_written(text: str | None) -> Latex | None:
+    if text is None or len(text) > AS_WRITTEN_PRINTED or not text.strip():
+        return None
+    return typewriter(text)
+
+
+def _as_read(claim: FirstOrderClaim) -> Latex | None:
+    if len(claim.as_written) > AS_WRITTEN_PRINTED:
+        return None
+    return _as_written(read_equation(claim.as_written, letters=claim.letters).echo)
+
+
+def _claimed(
+    claim: FirstOrderClaim, printer: Printer, sym: Symbols
+) -> tuple[Latex | None, tuple[ClaimedPower, ...]]:
+    """The closed form written out, or its factors one by one when it is long."""
+    if claim.solution is None:
+        return None, ()
+    written = printer.product(claim.solution)
+    if written is not None:
+        return written, ()
+    exponents = [power.exponent for power in claim.solution]
+    powers = tuple(
+        ClaimedPower(
+            index=Latex(k),
+            base=printer.polynomial(f"claimed-base-{k}", power.base),
+            exponent=rational(power.exponent),
+        )
+        for k, power in enumerate(claim.solution, 1)
+    )
+    return Latex(f"${symbolic_product(sym.w, exponents)}$"), powers
+
+
+def _digest(digest: str) -> Latex:
+    groups = [digest[k : k + 8] for k in range(0, len(digest), 8)]
+    return Latex(r"\texttt{" + " ".join(groups) + "}")

@@ -1,0 +1,170 @@
+"""Pieces of LaTeX that the context builders share."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+from fractions import Fraction
+
+from certgen.claim import Power
+from certgen.notation.latex_writer import (
+    Latex,
+    escape,
+    integer,
+    polynomial,
+    power_product,
+    rational,
+)
+from certgen.polynomial import Polynomial, write_integer, write_polynomial
+
+__all__ = [
+    "DIGITS_PER_CELL",
+    "FACTORS_LIMIT",
+    "LINE",
+    "TERMS_LIMIT",
+    "TEXT_LIMIT",
+    "WRITTEN_LINES",
+    "Printer",
+    "is_omitted",
+    "join_numbers",
+    "lines_of",
+    "prose",
+    "signed_factor",
+    "signed_sum",
+    "symbolic_product",
+    "typewriter",
+]
+
+TERMS_LIMIT = 400
+"""A polynomial with more terms is not printed; it stays in the stored file."""
+
+TEXT_LIMIT = 20_000
+"""A formula whose text is longer than this many characters is not printed."""
+
+FACTORS_LIMIT = 60
+"""More bases or factors than this are not listed one by one."""
+
+WRITTEN_LINES = 12
+"""Identities are written out when they take at most this many display lines."""
+
+LINE = 60
+"""Characters of strict notation that make about one display line."""
+
+DIGITS_PER_CELL = 12
+"""Numbers of spot checks stand in a table when they fit a pocket calculator."""
+
+_BREAK = r"\certgenhere{}"
+
+
+def is_omitted(value: Polynomial) -> bool:
+    """Whether `value` is beyond the size that an appendix prints."""
+    terms = sum(1 for c in value.numerators if c)
+    return terms > TERMS_LIMIT or len(write_polynomial(value)) > TEXT_LIMIT
+
+
+def lines_of(values: Iterable[Polynomial]) -> int:
+    """About how many display lines these polynomials take, each on its own line."""
+    return sum(1 + len(write_polynomial(value)) // LINE for value in values)
+
+
+@dataclass(frozen=True, slots=True)
+class Printer:
+    """Prints polynomials in one letter; what is too long refers to `file`."""
+
+    letter: str
+    file: str
+
+    def polynomial(self, name: str, value: Polynomial, letter: str | None = None) -> Latex:
+        """Return the tagged formula, or its size when it is beyond the limits."""
+        if is_omitted(value):
+            return self._omitted(value)
+        return _tag(name, polynomial(value, letter or self.letter))
+
+    def number(self, name: str, value: Fraction) -> Latex:
+        """Return a tagged rational number."""
+        return _tag(name, rational(value))
+
+    def product(self, powers: Sequence[Power]) -> Latex | None:
+        """Return a product of powers written out, or None when that is long."""
+        text = sum(len(write_polynomial(power.base)) for power in powers)
+        if text > 5 * LINE or any(is_omitted(power.base) for power in powers):
+            return None
+        return Latex(f"${power_product(tuple(powers), self.letter)}$")
+
+    def _omitted(self, value: Polynomial) -> Latex:
+        terms = sum(1 for c in value.numerators if c)
+        largest = max((abs(c) for c in value.numerators), default=0)
+        digits = max(len(write_integer(largest)), len(write_integer(value.denominator)))
+        return Latex(
+            rf"\certgenomitted{{{value.degree}}}{{{terms}}}{{{digits}}}"
+            f"{{{typewriter(self.file)}}}"
+        )
+
+
+def _tag(name: str, content: str) -> Latex:
+    return Latex(rf"\certgenformula{{{name}}}{{{content}}}")
+
+
+def signed_factor(value: int) -> Latex:
+    """Return an integer as a factor in a product: negative ones in parentheses."""
+    return Latex(integer(value) if value >= 0 else f"({integer(value)})")
+
+
+def signed_sum(values: Sequence[int]) -> Latex:
+    """Return the sum of integers as written, unevaluated."""
+    pieces = [str(integer(values[0]))]
+    for value in values[1:]:
+        sign = "-" if value < 0 else "+"
+        pieces.append(rf"\certgenbreak {sign}{integer(abs(value))}")
+    return Latex("".join(pieces))
+
+
+def join_numbers(values: Sequence[int]) -> Latex:
+    """Return `$2$, $3$ and $5$`."""
+    texts = [f"${integer(value)}$" for value in values]
+    if len(texts) < 2:
+        return Latex("".join(texts))
+    return Latex(", ".join(texts[:-1]) + " and " + texts[-1])
+
+
+def symbolic_product(symbol: str, exponents: Sequence[Fraction]) -> Latex:
+    """Return symbol_1^e_1 symbol_2^e_2 ..., without a factor where e is 0."""
+    one = len(exponents) == 1
+    pieces = []
+    for k, exponent in enumerate(exponents, 1):
+        if exponent:
+            subscript = "" if one else f"_{{{k}}}"
+            power = "" if exponent == 1 else f"^{{{_inline(exponent)}}}"
+            pieces.append(f"{symbol}{subscript}{power}")
+    return Latex(r"\,\certgenbreak ".join(pieces) or "1")
+
+
+def _inline(value: Fraction) -> str:
+    text = str(integer(value.numerator))
+    return text if value.denominator == 1 else f"{text}/{integer(value.denominator)}"
+
+
+# --------------------------------------------------------------------------
+# text
+
+
+def _pieces(word: str, size: int) -> list[str]:
+    return [word[k : k + size] for k in range(0, len(word), size)]
+
+
+def typewriter(text: str) -> Latex:
+    """Return text in typewriter type, breakable inside long words."""
+    words = [
+        _BREAK.join(escape(piece) for piece in _pieces(word, 6)) for word in text.split()
+    ]
+    return Latex(r"\texttt{" + " ".join(words) + "}")
+
+
+def prose(text: str) -> Latex:
+    """Return the author's text, escaped, with places to break very long words."""
+    words = []
+    for word in re.split(r"\s+", text.strip()):
+        size = 8 if len(word) > 16 else len(word) or 1
+        words.append(_BREAK.join(escape(piece) for piece in _pieces(word, size)))
+    return Latex(" ".join(words))
