@@ -13,7 +13,8 @@ from dataclasses import dataclass
 from fractions import Fraction
 from typing import Any
 
-__all__ = ["AUTHORS_WORDS", "Mutant", "single_field_mutants", "transplants"]
+__all__ = ["AUTHORS_WORDS", "Mutant", "read_coefficients", "single_field_mutants", "transplants",
+           "write_coefficients"]
 
 AUTHORS_WORDS = frozenset(
     "$.claim.id $.claim.as_written $.claim.solution_as_written $.claim.title $.claim.note "
@@ -138,8 +139,8 @@ def _string_changes(value: str) -> Iterator[tuple[str, str]]:
     yield "empty", ""
     if re.fullmatch(r"-?\d+(/\d+)?", value):
         yield from _number_changes(value)
-    for what, f in _polynomial_changes(_read(value)):
-        yield what, _write(f)
+    for what, f in _polynomial_changes(read_coefficients(value)):
+        yield what, write_coefficients(f)
 
 
 def _number_changes(value: str) -> Iterator[tuple[str, str]]:
@@ -173,12 +174,12 @@ def _equation_changes(value: str) -> Iterator[tuple[str, str]]:
     yield "sides swapped", f"({a})*y' = ({b})*y"
     yield "no asterisks", f"({b})y' = ({a})y"
     yield "a space before", f" {value}"
-    for what, f in _polynomial_changes(_read(b)):
-        yield f"b: {what}", f"({_write(f)})*y' = ({a})*y"
-    for what, f in _polynomial_changes(_read(a)):
-        yield f"a: {what}", f"({b})*y' = ({_write(f)})*y"
+    for what, f in _polynomial_changes(read_coefficients(b)):
+        yield f"b: {what}", f"({write_coefficients(f)})*y' = ({a})*y"
+    for what, f in _polynomial_changes(read_coefficients(a)):
+        yield f"a: {what}", f"({b})*y' = ({write_coefficients(f)})*y"
     for what, g in (("2", [2]), ("-1", [-1]), ("x", [0, 1]), ("x + 1", [1, 1])):
-        both = [_write(_times(_read(part), g)) for part in (b, a)]
+        both = [write_coefficients(_times(read_coefficients(part), g)) for part in (b, a)]
         yield f"both sides times {what}", f"({both[0]})*y' = ({both[1]})*y"
 
 
@@ -218,7 +219,7 @@ def _times(f: Coefficients, g: Coefficients) -> list[Fraction]:
     return out
 
 
-def _read(text: str) -> list[Fraction]:
+def read_coefficients(text: str) -> list[Fraction]:
     """The coefficients of a polynomial such as `-3/2*x^2 + x - 1`."""
     out: dict[int, Fraction] = {}
     for sign, number, x, exponent in re.findall(
@@ -230,7 +231,8 @@ def _read(text: str) -> list[Fraction]:
     return [out.get(k, Fraction(0)) for k in range(max(out, default=-1) + 1)]
 
 
-def _write(f: Coefficients) -> str:
+def write_coefficients(f: Coefficients) -> str:
+    """The polynomial with these ascending coefficients, in strict notation."""
     pieces = []
     for k in range(len(f) - 1, -1, -1):
         if f[k]:

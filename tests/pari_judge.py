@@ -54,6 +54,8 @@ def _call(obj: dict[str, Any]) -> str:
     if match is None:
         raise ValueError(claim["equation"])
     b, a = match.groups()
+    if proof["kind"] == "closed-form-disagrees" and claim["solution"] is None:
+        return '"no closed form"'
     closed = [] if claim["solution"] is None else [_powers(claim["solution"])]
     words = f'"{claim["asserts"]}", {_list(closed)}, "{obj["verdict"]}", "{proof["kind"]}"'
     calls = [f"verdict({a}, {b}, {words})"]

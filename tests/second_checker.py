@@ -1,6 +1,7 @@
-"""A second checker, written from `certgen/format/specification.md` alone.
+"""A second checker, rule by rule what `certgen/format/specification.md` says.
 
-It shares no code with certgen: plain Python, schoolbook arithmetic, slow and short.
+It shares no code with certgen (plain Python, schoolbook arithmetic), but its author had
+read the first one: agreement shows slips of either, not a misconception of both.
 `judge(text)` gives the exit status and, for a rejection, the code.
 """
 
@@ -11,7 +12,7 @@ import json
 import re
 from collections import Counter
 from fractions import Fraction
-from itertools import count
+from itertools import count, pairwise
 from math import gcd, lcm
 from typing import Any
 
@@ -102,6 +103,15 @@ def power(f: Poly, e: int, g: Poly, p: int) -> Poly:
 
 # ---------------------------------------------------------------- reading
 
+def number(t: str) -> int:
+    """int(t) without Python's bound of 4300 digits."""
+    return int(t) if len(t) <= 4000 else number(t[:-4000]) * 10**4000 + int(t[-4000:])
+
+
+def digits(n: int) -> str:
+    return str(n) if n < 10**4000 else digits(n // 10**4000) + str(n % 10**4000).zfill(4000)
+
+
 INT = re.compile(r"0|-?[1-9][0-9]*")
 TERM = re.compile(r"(^-?| [+-] )(?:([0-9]+)(?:/([0-9]+))?)?(\*?)(x(?:\^([0-9]+))?)?")
 
@@ -109,7 +119,7 @@ TERM = re.compile(r"(^-?| [+-] )(?:([0-9]+)(?:/([0-9]+))?)?(\*?)(x(?:\^([0-9]+))
 def integer(t: Any) -> int:
     need(isinstance(t, str) and INT.fullmatch(t) is not None, 2)
     need(len(t) <= 20_001, 3)
-    return int(t)
+    return -number(t[1:]) if t[0] == "-" else number(t)
 
 
 def rational(t: Any) -> Fraction:
@@ -126,7 +136,9 @@ def written(f: Poly) -> str:
         if c := f[k]:
             out += (" - " if c < 0 else " + ") if out else ("-" if c < 0 else "")
             x = "" if k == 0 else "x" if k == 1 else f"x^{k}"
-            out += x if x and abs(c) == 1 else f"{abs(c)}*{x}" if x else str(abs(c))
+            n, d = abs(c).numerator, abs(c).denominator
+            size = digits(n) + ("" if d == 1 else "/" + digits(d))
+            out += x if x and size == "1" else f"{size}*{x}" if x else size
     return out or "0"
 
 
@@ -141,12 +153,14 @@ def polynomial(t: Any) -> Poly:
         need(bool(m[2] or m[5]) and bool(m[4]) == bool(m[2] and m[5]), 2)
         need(not m[6] or (len(m[6]) <= 9 and int(m[6]) <= 10_000), 3)
         need(max(len(m[2] or ""), len(m[3] or "")) <= 20_001, 3)
-        need(int(m[3] or 1) != 0, 2)
+        need(number(m[3] or "1") != 0, 2)
         k = int(m[6] or 1) if m[5] else 0
         need(not coefficients or k < min(coefficients), 2)
         sign = -1 if "-" in m[1] else 1
-        coefficients[k] = Fraction(sign * int(m[2] or 1), int(m[3] or 1))
+        coefficients[k] = Fraction(sign * number(m[2] or "1"), number(m[3] or "1"))
         end = m.end()
+    bottom = lcm(*(c.denominator for c in coefficients.values()))
+    need(bottom.bit_length() <= 66_673, 3)
     f = trim([coefficients.get(k, Fraction(0)) for k in range(max(coefficients) + 1)])
     need(written(f) == t, 2)
     return [int(c) for c in f] if all(c.denominator == 1 for c in f) else f
@@ -157,7 +171,7 @@ def key(f: Poly) -> tuple[int, Poly]:
 
 
 def ordered(fs: list[Poly]) -> None:
-    need(all(key(f) < key(g) for f, g in zip(fs, fs[1:], strict=False)), "not-canonical")
+    need(all(key(f) < key(g) for f, g in pairwise(fs)), "not-canonical")
 
 
 def integral(f: Poly) -> bool:
@@ -227,7 +241,8 @@ def read_claim(c: Any) -> tuple[Poly, Poly, list[tuple[Poly, Fraction]] | None]:
     kind(c, "first-order-homogeneous")
     keys(c, "kind id equation as_written letters asserts subject solution "
             "solution_as_written title note")  # fmt: skip
-    need(isinstance(c["id"], str) and bool(re.fullmatch(r"[a-z0-9][a-z0-9-]{0,63}", c["id"])), 2)
+    need(isinstance(c["id"], str), 2)
+    need(re.fullmatch(r"[a-z0-9][a-z0-9-]{0,63}", c["id"]) is not None, 2)
     equation = read_equation(c["equation"])
     keys(c["letters"], "variable function")
     letters = [c["letters"]["variable"], c["letters"]["function"]]
@@ -399,7 +414,10 @@ def squarefree(f: Poly, p: int) -> bool:
 
 
 def log_derivative(solution: list[tuple[Poly, Fraction]]) -> tuple[int, Poly, Poly]:
-    n = lcm(*(rho.denominator for _, rho in solution))
+    n = 1
+    for _, rho in solution:
+        n = lcm(n, rho.denominator)
+        need(n.bit_length() <= 66_440, 3)
     m: Poly = []
     for i, (v, rho) in enumerate(solution):
         others = product([w for j, (w, _) in enumerate(solution) if j != i])
@@ -444,10 +462,14 @@ def radical(n: int) -> int:
 
 
 def check_eisenstein(solution: Any, v: Poly, x0: int, constant: int) -> None:
+    need((len(v) - 1) * x0.bit_length() <= 200_000, "eisenstein-point")
     need(value(v, x0) != 0, "eisenstein-point")
     for f, rho in solution:
         d = rho.denominator
         c = value(f, x0) * (1 if d == 1 else d * (radical(d) if d < 10**12 else d))
+        if constant % c == 0:
+            continue
+        need(len(f) <= 101, "eisenstein-constant")
         taylor, factorial = diff(f), 1
         for j in range(1, len(f)):
             factorial *= j
@@ -608,7 +630,7 @@ def parse(data: str) -> Any:
         need(max(Counter(k for k, _ in pairs).values(), default=1) == 1, 2)
         return dict(pairs)
 
-    def number(_: str) -> Any:
+    def refuse(_: str) -> Any:
         raise Verdict(2)
 
     depth = 0
@@ -616,8 +638,8 @@ def parse(data: str) -> Any:
         depth += (token in "[{") - (token in "]}")
         need(depth <= 16, 3)
     try:
-        return json.loads(data, object_pairs_hook=unique, parse_int=number,
-                          parse_float=number, parse_constant=number)  # fmt: skip
+        return json.loads(data, object_pairs_hook=unique, parse_int=refuse,
+                          parse_float=refuse, parse_constant=refuse)  # fmt: skip
     except json.JSONDecodeError:
         raise Verdict(2) from None
 

@@ -212,7 +212,8 @@ def test_primes_are_those_of_sympy() -> None:
 
 
 @pytest.mark.parametrize(
-    "n", [-7, -1, 0, 1, 4, 9, 91, 10**12, 2**61 - 1, 10**5000 + 1, 999_983**2]
+    "n", [-7, -1, 0, 1, 4, 9, 91, 10**12, 2**61 - 1, 10**5000 + 1, 999_983**2],
+    ids=lambda n: f"{n.bit_length()}-bits",
 )
 def test_what_is_not_proved_prime_is_rejected(n: int) -> None:
     """Composites and everything from 10^12 on, quickly; the message stays short."""

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from certgen.claim import GREEK_LETTERS, Letters
@@ -200,6 +200,7 @@ def test_closed_forms_that_are_none_are_refused(text: str, message: str) -> None
     assert message in str(caught.value)
 
 
+@settings(deadline=None)
 @given(st.lists(st.integers(-10**30, 10**30), min_size=1, max_size=8).map(
     Polynomial.from_integers), st.sampled_from(["x", "t", "lambda"]))
 def test_polynomials_read_the_same_in_both_notations(p: Polynomial, variable: str) -> None:

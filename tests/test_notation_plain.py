@@ -9,7 +9,7 @@ from pathlib import Path
 
 import pytest
 import sympy
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from certgen.claim import FirstOrderEquation, Letters, Power
@@ -24,7 +24,7 @@ from certgen.notation import (
 )
 from certgen.notation.source import LENGTH_LIMIT, TOKENS_LIMIT
 from certgen.polynomial import Polynomial, write_polynomial
-from tests.notation_forms import closed_form, flint_of, failure, make_claim_of
+from tests.notation_forms import closed_form, failure, flint_of, make_claim_of
 
 TRUTHS = json.loads((Path(__file__).parent / "truths/hostile_inputs.json").read_text())
 HOSTILE = [r for r in TRUTHS["records"] if r["kind"].startswith("expression")]
@@ -125,6 +125,7 @@ POLYNOMIALS = st.lists(st.integers(-9, 9), min_size=1, max_size=5).map(
     Polynomial.from_integers)
 
 
+@settings(deadline=None)
 @given(POLYNOMIALS, POLYNOMIALS.filter(lambda p: not p.is_zero), st.data())
 def test_many_forms_of_one_equation_give_the_same_claim(
     a: Polynomial, b: Polynomial, data: st.DataObject
@@ -153,6 +154,7 @@ def test_many_forms_of_one_equation_give_the_same_claim(
         assert read_equation(read.echo, letters=read.letters).equation == read.equation
 
 
+@settings(deadline=None)
 @given(st.recursive(
     st.sampled_from(["x", "1", "2", "7", "x^3", "(x+1)^2", "x^-1"]),
     lambda inner: st.builds(
@@ -489,6 +491,7 @@ def test_hostile_expressions_are_answered(
 FRACTIONS = st.tuples(POLYNOMIALS, POLYNOMIALS.filter(lambda p: not p.is_zero))
 
 
+@settings(deadline=None)
 @given(FRACTIONS, FRACTIONS)
 def test_rational_functions_agree_with_sympy(
     first: tuple[Polynomial, Polynomial], second: tuple[Polynomial, Polynomial]

@@ -80,9 +80,9 @@ def _body(checked: CheckedCertificate) -> str:
     proof = checked.certificate.proof
     if isinstance(proof, AlgebraicSolution):
         return _algebraic(checked)
-    return (
-        _closed_form(checked) if isinstance(proof, ClosedFormDisagrees) else _refutation(checked)
-    )
+    if isinstance(proof, ClosedFormDisagrees):
+        return _closed_form(checked)
+    return _refutation(checked)
 
 
 def _algebraic(checked: CheckedCertificate) -> str:
@@ -106,7 +106,7 @@ def _closed_form(checked: CheckedCertificate) -> str:
 
 def _refutation(checked: CheckedCertificate) -> str:
     head, refutation = build_refutation(checked)
-    cited = ("cartier", "honda", "katz")
+    cited: tuple[str, ...] = ("cartier", "honda", "katz")
     if not refutation.density.almost_all:
         cited += ("chebotarev", "kronecker", "rothstein")
     return render(

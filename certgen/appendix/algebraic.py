@@ -20,6 +20,7 @@ from certgen.appendix.formulas import (
     symbolic_product,
 )
 from certgen.appendix.strip import StripItem, build_strip
+from certgen.appendix.symbols import Symbols
 from certgen.certificate import AlgebraicSolution, PartialFraction
 from certgen.checker import CheckedCertificate
 from certgen.checker.facts import AlgebraicFacts, IdentitySpot
@@ -139,7 +140,7 @@ def build_algebraic_parts(
     linear = len(proof.partial_fractions) <= FACTORS_LIMIT and all(
         term.factor.degree == 1 for term in proof.partial_fractions
     )
-    symbolic = Latex(f"${_symbolic(sym.v, exponents, sym.rho)}$")
+    symbolic = Latex(f"${_symbolic(sym, exponents, f'{sym.rho}_i')}$")
     return Algebraic(
         zero=not proof.solution,
         rational=proof.degree == 1,
@@ -162,9 +163,9 @@ def build_algebraic_parts(
         spot=_spot(facts),
         solution=printer.product(proof.solution) or symbolic,
         numerator=printer.product(proof.minimal_polynomial.numerator)
-        or Latex(f"${_symbolic(sym.v, top, sym.n)}$"),
+        or Latex(f"${_symbolic(sym, top, f'{sym.n}_i', f'_{{{sym.n}_i>0}}')}$"),
         denominator=printer.product(proof.minimal_polynomial.denominator)
-        or Latex(f"${_symbolic(sym.v, bottom, sym.n)}$"),
+        or Latex(f"${_symbolic(sym, bottom, f'-{sym.n}_i', f'_{{{sym.n}_i<0}}')}$"),
         has_numerator=any(top),
         has_denominator=any(bottom),
         one_root=facts.squarefree_degree <= 1,
@@ -186,11 +187,14 @@ def _shift(proof: AlgebraicSolution) -> Latex:
     return Latex(f"{integer(point)} +" if point else "")
 
 
-def _symbolic(symbol: str, exponents: Sequence[Fraction], name: str) -> str:
-    """v_1^e_1 v_2^e_2 ..., or a product sign when there are too many."""
+def _symbolic(
+    sym: Symbols, exponents: Sequence[Fraction], exponent: str, condition: str = ""
+) -> str:
+    """v_1^e_1 v_2^e_2 ..., or one product sign when there are too many."""
     if len(exponents) <= FACTORS_LIMIT:
-        return symbolic_product(symbol, exponents)
-    return rf"\prod {symbol}_i^{{{name}_i}}"
+        return symbolic_product(sym.v, exponents)
+    text = rf"\prod{condition} {sym.v}_i^{{{exponent}}}"
+    return text.replace("_i", f"_{sym.i}")
 
 
 def _integer_powers(bases: Sequence[Power], side: Sequence[Power]) -> list[Fraction]:

@@ -17,6 +17,9 @@ __all__ = ["ClaimedPower", "Head", "build_head", "printer_of"]
 AS_WRITTEN_PRINTED = 600
 """The author's text of the equation is repeated up to this many characters."""
 
+EQUATION_PRINTED = 600
+"""A longer equation is stated with a and b, which are printed as data."""
+
 FRACTION_PRINTED = 36
 """r = a/b is shown as one fraction when both sides are at most this long."""
 
@@ -43,6 +46,7 @@ class Head:
     proved: bool
     zero: bool
     equation: Latex
+    is_long: bool
     as_fraction: Latex | None
     as_written: Latex | None
     as_read: Latex | None
@@ -80,6 +84,7 @@ def build_head(checked: CheckedCertificate) -> Head:
         proved=checked.certificate.verdict == "proved",
         zero=claim.equation.numerator.is_zero,
         equation=_equation(claim, sym),
+        is_long=_is_long(claim),
         as_fraction=_as_fraction(claim),
         as_written=_as_written(claim.as_written),
         as_read=_as_read(claim),
@@ -100,11 +105,16 @@ def _short(value: Polynomial) -> bool:
     return len(write_polynomial(value)) <= FRACTION_PRINTED
 
 
-def _equation(claim: FirstOrderClaim, sym: Symbols) -> Latex:
+def _is_long(claim: FirstOrderClaim) -> bool:
     a, b = claim.equation.numerator, claim.equation.denominator
-    if len(write_polynomial(a)) + len(write_polynomial(b)) <= 2_000:
-        return Latex(f"${equation(a, b, claim.letters)}$")
-    return Latex(f"${sym.b}\\,{sym.y}' = {sym.a}\\,{sym.y}$")
+    return len(write_polynomial(a)) + len(write_polynomial(b)) > EQUATION_PRINTED
+
+
+def _equation(claim: FirstOrderClaim, sym: Symbols) -> Latex:
+    if _is_long(claim):
+        return Latex(f"${sym.b}\\,{sym.y}' = {sym.a}\\,{sym.y}$")
+    a, b = claim.equation.numerator, claim.equation.denominator
+    return Latex(f"${equation(a, b, claim.letters)}$")
 
 
 def _as_fraction(claim: FirstOrderClaim) -> Latex | None:

@@ -6,7 +6,7 @@ from functools import cache
 from importlib.util import find_spec
 from pathlib import Path
 
-from jinja2 import Environment, FileSystemLoader, StrictUndefined
+from jinja2 import Environment, FileSystemLoader, StrictUndefined, Undefined
 
 from certgen.errors import DefectError
 from certgen.notation.latex_writer import LATEX_MACROS, Latex, escape, integer
@@ -24,6 +24,8 @@ def _finalize(value: object) -> str:
         return value
     if type(value) is str:
         return escape(value)
+    if isinstance(value, Undefined):
+        return str(value)  # raises UndefinedError with the name
     raise DefectError(f"a template prints a value of type {type(value).__name__}")
 
 

@@ -54,7 +54,7 @@ LINE = 60
 DIGITS_PER_CELL = 12
 """Numbers of spot checks stand in a table when they fit a pocket calculator."""
 
-_BREAK = r"\certgenhere{}"
+_BREAK = r"\certgenhere "
 
 
 def is_omitted(value: Polynomial) -> bool:
@@ -149,15 +149,19 @@ def _inline(value: Fraction) -> str:
 # text
 
 
+_TOKEN = re.compile(r"(?:\\?[A-Za-z0-9.]+|.)[)\]}]*")
+
+
 def _pieces(word: str, size: int) -> list[str]:
     return [word[k : k + size] for k in range(0, len(word), size)]
 
 
 def typewriter(text: str) -> Latex:
-    """Return text in typewriter type, breakable inside long words."""
-    words = [
-        _BREAK.join(escape(piece) for piece in _pieces(word, 6)) for word in text.split()
-    ]
+    """Return text in typewriter type, breakable between words, names and signs."""
+    words = []
+    for word in text.split():
+        tokens = [piece for token in _TOKEN.findall(word) for piece in _pieces(token, 12)]
+        words.append(_BREAK.join(escape(token) for token in tokens))
     return Latex(r"\texttt{" + " ".join(words) + "}")
 
 

@@ -23,7 +23,7 @@ from certgen.errors import DefectError
 from certgen.notation.latex_writer import Latex, integer, rational
 from certgen.polynomial import Polynomial, write_polynomial
 
-__all__ = ["CounterPrimePart", "Density", "ObstructionPart", "Refutation", "build_refutation"]
+__all__ = ["CounterPrimePart", "Density", "ObstructionShown", "Refutation", "build_refutation"]
 
 HAND_PRIME = 31
 HAND_DEGREE = 3
@@ -32,28 +32,53 @@ HAND_DIGITS = 12
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
-class ObstructionPart:
-    """One obstruction over Q; `kind` decides which of the fields are printed."""
+class PolynomialPartShown:
+    """a = quotient*b + remainder; `cost` orders the obstructions by their length."""
 
-    kind: str
+    kind: str = PolynomialPart.KIND
     cost: int
     by_hand: bool
-    factor: Latex = Latex("")
-    quotient: Latex = Latex("")
-    remainder: Latex = Latex("")
-    order: Latex = Latex("")
-    one_root: bool = False
-    numerator: Latex = Latex("")
-    derivative: Latex = Latex("")
-    residue_polynomial: Latex = Latex("")
-    quadratic: bool = False
-    negative: bool = False
-    discriminant: Latex = Latex("")
-    discriminant_sum: Latex = Latex("")
-    root_below: Latex = Latex("")
-    root_above: Latex = Latex("")
-    rootless_prime: Latex = Latex("")
-    rootless_by_hand: bool = False
+    quotient: Latex
+    remainder: Latex
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class MultiplePoleShown:
+    """A factor with the order of the poles at its roots."""
+
+    kind: str = MultiplePole.KIND
+    cost: int
+    factor: Latex
+    order: Latex
+    one_root: bool
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class IrrationalResidueShown:
+    """The residues numerator/derivative and the polynomial R that they satisfy.
+
+    `quadratic` says that R is shown to have no rational root by its discriminant,
+    between two squares or negative; otherwise by a prime.
+    """
+
+    kind: str = IrrationalResidue.KIND
+    cost: int
+    by_hand: bool
+    factor: Latex
+    numerator: Latex
+    derivative: Latex
+    residue_polynomial: Latex
+    quadratic: bool
+    negative: bool
+    discriminant: Latex
+    discriminant_sum: Latex
+    root_below: Latex
+    root_above: Latex
+    rootless_prime: Latex
+    rootless_by_hand: bool
+
+
+ObstructionShown = PolynomialPartShown | MultiplePoleShown | IrrationalResidueShown
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -79,10 +104,9 @@ class CounterPrimePart:
     derivative: Latex
     numerator_degree: Latex
     denominator_degree: Latex
-    factor: Latex
-    residue: Latex
-    residue_power: Latex
-    linear: bool
+    factor: Latex | None
+    residue: Latex | None
+    residue_power: Latex | None
     by_hand: bool
     irreducible: bool
     irreducible_by_hand: bool
@@ -118,8 +142,7 @@ class Refutation:
     factor_count: Latex
     constant_numerator: bool
     lowest_terms_prime: Latex
-    obstructions: tuple[ObstructionPart, ...]
-    has_residues: bool
+    obstructions: tuple[ObstructionShown, ...]
     counter_prime: CounterPrimePart
     density: Density
     strip: tuple[StripItem, ...]
@@ -142,7 +165,6 @@ def build_refutation(checked: CheckedCertificate) -> tuple[Head, Refutation]:
         constant_numerator=claim.equation.numerator.is_constant,
         lowest_terms_prime=integer(proof.lowest_terms_prime),
         obstructions=parts,
-        has_residues=any(part.kind == "irrational_residue" for part in parts),
         counter_prime=_counter_prime(printer, proof, facts),
         density=_density(proof, facts),
         strip=build_strip(facts.strip),
@@ -173,10 +195,10 @@ def _size(*values: Polynomial) -> int:
 
 def _obstructions(
     printer: Printer, z: str, proof: NoAlgebraicSolution, facts: NoAlgebraicFacts
-) -> tuple[ObstructionPart, ...]:
+) -> tuple[ObstructionShown, ...]:
     """The obstructions, the one that is shortest to print first."""
     irrational = iter(facts.irrational)
-    parts = []
+    parts: list[ObstructionShown] = []
     for k, item in enumerate(proof.obstructions, 1):
         if isinstance(item, PolynomialPart):
             parts.append(_polynomial_part(printer, item, facts))
@@ -189,24 +211,22 @@ def _obstructions(
 
 def _polynomial_part(
     printer: Printer, item: PolynomialPart, facts: NoAlgebraicFacts
-) -> ObstructionPart:
+) -> PolynomialPartShown:
     remainder = facts.remainder
     if remainder is None:
         raise DefectError("the remainder of the polynomial part is missing")
-    return ObstructionPart(
-        kind="polynomial_part",
-        cost=_size(item.quotient, remainder),
+    return PolynomialPartShown(
+        # seen from the degrees; the data count only when they are long
+        cost=max(0, _size(item.quotient, remainder) - 200),
         by_hand=item.quotient.degree <= HAND_DEGREE and remainder.degree <= HAND_DIVISION,
         quotient=printer.polynomial("quotient", item.quotient),
         remainder=printer.polynomial("remainder", remainder),
     )
 
 
-def _multiple_pole(printer: Printer, k: int, item: MultiplePole) -> ObstructionPart:
-    return ObstructionPart(
-        kind="multiple_pole",
+def _multiple_pole(printer: Printer, k: int, item: MultiplePole) -> MultiplePoleShown:
+    return MultiplePoleShown(
         cost=_size(item.factor),
-        by_hand=item.factor.degree <= HAND_DEGREE,
         factor=printer.polynomial(f"multiple-pole-{k}", item.factor),
         order=integer(item.order),
         one_root=item.factor.degree == 1,
@@ -215,17 +235,15 @@ def _multiple_pole(printer: Printer, k: int, item: MultiplePole) -> ObstructionP
 
 def _irrational(
     printer: Printer, z: str, k: int, item: IrrationalResidue, facts: IrrationalResidueFacts
-) -> ObstructionPart:
+) -> IrrationalResidueShown:
     residue_polynomial, disc = item.residue_polynomial, facts.discriminant
     root = isqrt(disc) if disc is not None and disc > 0 else 0
     short = all(abs(c) < 10**HAND_DIGITS for c in residue_polynomial.numerators)
-    return ObstructionPart(
-        kind="irrational_residue",
+    return IrrationalResidueShown(
         # a quadratic needs one line more than a multiple pole, others a prime
         cost=_size(item.factor, residue_polynomial) + (0 if disc is not None else 200),
         by_hand=short and item.factor.degree == 2 and residue_polynomial.degree == 2,
         factor=printer.polynomial(f"residue-factor-{k}", item.factor),
-        one_root=item.factor.degree == 1,
         numerator=printer.polynomial(f"residue-numerator-{k}", facts.numerator),
         derivative=printer.polynomial(f"residue-derivative-{k}", facts.derivative),
         residue_polynomial=printer.polynomial(
@@ -279,12 +297,11 @@ def _counter_prime(
         derivative=printer.polynomial("reduced-derivative", reduced.derivative),
         numerator_degree=integer(reduced.numerator.degree),
         denominator_degree=integer(reduced.denominator.degree),
-        factor=printer.polynomial("witness-factor", factor) if factor else Latex(""),
+        factor=printer.polynomial("witness-factor", factor) if factor else None,
         residue=printer.polynomial("witness-residue", witness.residue)
-        if isinstance(witness, ResidueOutsidePrimeField) else Latex(""),
+        if isinstance(witness, ResidueOutsidePrimeField) else None,
         residue_power=printer.polynomial("witness-residue-power", reduced.residue_power)
-        if reduced.residue_power is not None else Latex(""),
-        linear=factor is not None and factor.degree == 1,
+        if reduced.residue_power is not None else None,
         by_hand=small and (factor is None or factor.degree <= HAND_DEGREE),
         irreducible=outside and bool(reduced.factor_is_irreducible),
         irreducible_by_hand=factor is not None and factor.degree <= HAND_DEGREE

@@ -14,7 +14,7 @@ from certgen.certificate import (
     NoAlgebraicSolution,
 )
 from certgen.checker import CheckedCertificate
-from certgen.notation.latex_writer import Latex, equation, integer, power_product
+from certgen.notation.latex_writer import Latex, equation, integer, letter, power_product
 
 __all__ = ["SummaryRow", "build_summary", "latex_summary", "summary_width"]
 
@@ -68,9 +68,10 @@ def latex_summary(checked: CheckedCertificate) -> str:
     actual = proof.actual if isinstance(proof, ClosedFormDisagrees) else proof
     shown: str = equation(claim.equation.numerator, claim.equation.denominator, claim.letters)
     if isinstance(actual, AlgebraicSolution):
-        product = power_product(actual.solution, claim.letters.variable)
-        found = rf"\text{{algebraic of degree }}{integer(actual.degree)}:\ y = c\,{product}"
-        found = found.replace(" y ", f" {build_head(checked).sym.y} ", 1)
+        y, product = letter(claim.letters.function), ""
+        if actual.solution:
+            product = rf"\,{power_product(actual.solution, claim.letters.variable)}"
+        found = rf"\text{{algebraic of degree }}{integer(actual.degree)}:\ {y} = c{product}"
     else:
         found = rf"\text{{transcendental, counter-prime }}{integer(actual.counter_prime.p)}"
     text = rf"$\displaystyle {shown};\quad {found}$"

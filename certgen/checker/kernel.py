@@ -71,7 +71,8 @@ class CheckedCertificate:
     def __setattr__(self, name: str, value: object) -> None:
         raise AttributeError("a CheckedCertificate cannot be changed")
 
-    __delattr__ = __setattr__  # type: ignore[assignment]
+    def __delattr__(self, name: str) -> None:
+        raise AttributeError("a CheckedCertificate cannot be changed")
 
     def __repr__(self) -> str:
         claim = self.certificate.claim

@@ -33,6 +33,13 @@ def _quotient(value: fmpz_poly, divisor: fmpz_poly) -> fmpz_poly:
     return value if divisor.is_one() else value // divisor  # exact: divisor | value
 
 
+def _gcd_cost(first: fmpz_poly, second: fmpz_poly) -> int:
+    if first.length() <= 1 or second.length() <= 1:
+        return 0
+    bits = max(abs(first.height_bits()), abs(second.height_bits()))
+    return int(first.length() * second.length() * (1 + bits // 64))
+
+
 @dataclass(frozen=True, slots=True, eq=False)
 class RationalFunction:
     """num/den in lowest terms over Z[x] with lc(den) > 0 (zero is 0/1).
@@ -64,9 +71,17 @@ class RationalFunction:
     def variable(cls) -> RationalFunction:
         return cls(fmpz_poly([0, 1]), fmpz_poly([1]))
 
+    @classmethod
+    def polynomial(cls, value: Polynomial) -> RationalFunction:
+        return cls.make(to_fmpz_poly(value), fmpz_poly([value.denominator]))
+
     @property
     def is_zero(self) -> bool:
         return bool(self.num.is_zero())
+
+    @property
+    def is_polynomial(self) -> bool:
+        return bool(self.den.length() == 1)
 
     @property
     def is_constant(self) -> bool:
@@ -87,6 +102,14 @@ class RationalFunction:
     def height_bits(self) -> int:
         """The bit length of the largest coefficient."""
         return max(abs(self.num.height_bits()), abs(self.den.height_bits()))
+
+    def addition_cost(self, other: RationalFunction) -> int:
+        """About how many machine words the gcd in a sum has to touch."""
+        return _gcd_cost(self.den, other.den)
+
+    def multiplication_cost(self, other: RationalFunction) -> int:
+        """About how many machine words the gcds in a product have to touch."""
+        return _gcd_cost(self.num, other.den) + _gcd_cost(other.num, self.den)
 
     def __eq__(self, other: object) -> bool:
         if not isinstance(other, RationalFunction):

@@ -12,11 +12,9 @@ from __future__ import annotations
 from collections.abc import Sequence
 from fractions import Fraction
 
-from flint import fmpz_poly
-
 from certgen.claim import Letters, Power
 from certgen.errors import ExpressionError
-from certgen.exact.rational_functions import RationalFunction, from_fmpz_poly
+from certgen.exact.rational_functions import RationalFunction
 from certgen.notation.evaluate import Evaluator
 from certgen.notation.parser import Names, Parser
 from certgen.notation.source import Source
@@ -103,8 +101,8 @@ class _Reader:
             raise self.source.error(node.start, node.end, "a factor is zero",
                                     "a solution is not the zero function")
         result: _Powers = {}
-        for polynomial, exponent in ((value.num, 1), (value.den, -1)):
-            if polynomial.length() > 1:
+        for polynomial, exponent in ((value.numerator(), 1), (value.denominator(), -1)):
+            if not polynomial.is_constant:
                 result[_primitive(polynomial)] = Fraction(exponent)
         return result
 
@@ -131,11 +129,11 @@ class _Reader:
                 node.start, f"an exponent of {bits} bits; the limit is {EXPONENT_BITS_LIMIT}")
 
 
-def _primitive(polynomial: fmpz_poly) -> Polynomial:
-    content = polynomial.content()
-    if polynomial.leading_coefficient() < 0:
+def _primitive(polynomial: Polynomial) -> Polynomial:
+    content = polynomial.content
+    if polynomial.numerators[-1] < 0:
         content = -content
-    return from_fmpz_poly(polynomial // content)
+    return Polynomial(tuple(c // content for c in polynomial.numerators))
 
 
 def _parts(node: Node) -> tuple[Node, ...]:

@@ -11,12 +11,11 @@ from __future__ import annotations
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from fractions import Fraction
+from math import lcm
 from typing import TypeVar
 
-from flint import fmpz_poly
-
 from certgen.errors import CertgenError
-from certgen.exact.rational_functions import RationalFunction, to_fmpz_poly
+from certgen.exact.rational_functions import RationalFunction
 from certgen.notation.source import WORK_LIMIT, Source
 from certgen.notation.tree import (
     Name,
@@ -48,14 +47,6 @@ def balanced(values: Sequence[T], combine: Callable[[T, T], T]) -> T:
     return layer[0]
 
 
-def _cost(first: fmpz_poly, second: fmpz_poly) -> int:
-    """What a gcd costs, in the units of WORK_LIMIT."""
-    if first.length() <= 1 or second.length() <= 1:
-        return 0
-    bits = max(abs(first.height_bits()), abs(second.height_bits()))
-    return int(first.length() * second.length() * (1 + bits // _WORD))
-
-
 @dataclass(slots=True)
 class Evaluator:
     """Evaluates the trees of one text; `reason` is the hint for roots in them."""
@@ -68,16 +59,16 @@ class Evaluator:
     # -- exact arithmetic with limits
 
     def add(self, a: RationalFunction, b: RationalFunction, node: Node) -> RationalFunction:
-        if a.den.length() > 1 or b.den.length() > 1:
+        if not (a.is_polynomial and b.is_polynomial):
             self._bound(a, b, node)
-        self._spend(_cost(a.den, b.den), node)
+        self._spend(a.addition_cost(b), node)
         return self._paid(a + b, node)
 
     def multiply(
         self, a: RationalFunction, b: RationalFunction, node: Node
     ) -> RationalFunction:
         self._bound(a, b, node)
-        self._spend(_cost(a.num, b.den) + _cost(b.num, a.den), node)
+        self._spend(a.multiplication_cost(b), node)
         return self._paid(a * b, node)
 
     def divide(
@@ -189,15 +180,14 @@ class Evaluator:
         self, monomials: list[tuple[int, Fraction]], node: Node
     ) -> RationalFunction:
         coefficients: list[int | Fraction] = [0] * (max(k for k, _ in monomials) + 1)
-        common = RationalFunction.integer(1).den[0]
+        common = 1
         for k, c in monomials:
             coefficients[k] += c
-            common = common.lcm(coefficients[k].denominator)
+            common = lcm(common, coefficients[k].denominator)
             if common.bit_length() > _BITS_LIMIT:
                 raise self._digits(node)
         value = Polynomial.from_coefficients(coefficients)
-        return self._paid(
-            RationalFunction.make(to_fmpz_poly(value), fmpz_poly([value.denominator])), node)
+        return self._paid(RationalFunction.polynomial(value), node)
 
     def product(self, node: Product, values: Sequence[RationalFunction]) -> RationalFunction:
         """Return the product of the values of the factors of a node."""

@@ -50,7 +50,7 @@ def read_latex_polynomial(text: str, variable: str = "x") -> Polynomial:
 
 def _polynomial(text: str, variable: str, latex: bool | None) -> Polynomial:
     value = _read(text, variable, latex)
-    if value.den.length() > 1:
+    if not value.is_polynomial:
         raise ExpressionError("the expression is not a polynomial",
                               hint="its denominator is not constant")
     return from_fmpz_poly(value.num, int(value.den[0]))

@@ -64,7 +64,7 @@ class Parser:
         self.latex = is_latex(source.text) if latex is None else latex
         self.position = 0
 
-    # -- helpers
+    # -- moving on, and errors
 
     @property
     def token(self) -> Token:
@@ -132,11 +132,7 @@ class Parser:
     def _sign(self) -> bool:
         if not self.token.is_operator("+", "-"):
             return False
-        minus = self.advance().value == "-"
-        if self.token.is_operator("+", "-"):
-            raise self.error(self.token, "a repeated sign",
-                             "write one sign, or put the second in parentheses")
-        return minus
+        return self.advance().value == "-"
 
     def product(self) -> Node:
         start, first = self.token.start, self.token

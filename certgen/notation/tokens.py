@@ -80,6 +80,10 @@ class TokenList:
                 )
         elif kind is Kind.CLOSE:
             self.depth -= 1
+        elif value in ("+", "-") and self.tokens and self.tokens[-1].is_operator("+", "-"):
+            self.fail(start, end, "a repeated sign",
+                      "write one sign, or put the second in parentheses")
+            return
         self.tokens.append(Token(kind, value, start, end, word))
 
     def fail(self, start: int, end: int, message: str, hint: str | None = None) -> None:
