@@ -107,7 +107,8 @@ def _read_text(data: bytes | str) -> str:
 
 
 # a string that does not end is one token too: the scan stays linear
-_TOKEN = re.compile(r'"(?:[^"\\]|\\.)*"?|[\[{]|[\]}]')
+# (and possessive: it needs no memory)
+_TOKEN = re.compile(r'"(?:[^"\\]++|\\.)*+"?|[\[{]|[\]}]')
 
 
 def _check_nesting(text: str) -> None:

@@ -126,9 +126,10 @@ class Polynomial:
         )
 
     @property
-    def sort_key(self) -> tuple[int, tuple[Fraction, ...]]:
+    def sort_key(self) -> tuple[int, tuple[int | Fraction, ...]]:
         """The stated order of lists: by degree, then coefficients from the top."""
-        return self.degree, tuple(self.coefficients[::-1])
+        values = self.numerators if self.denominator == 1 else self.coefficients
+        return self.degree, values[::-1]
 
     @property
     def coefficients(self) -> tuple[Fraction, ...]:
@@ -182,12 +183,12 @@ def read_integer(text: str, *, path: str = "$") -> int:
         raise MalformedError(
             f"'{shorten(text)}' is not an integer in strict notation", path=path
         )
-    _check_digits(len(text), path)
+    _check_digits(len(text.lstrip("-")), path)
     return -read_natural(text[1:]) if text[0] == "-" else read_natural(text)
 
 
 def _check_digits(count: int, path: str) -> None:
-    if count > DIGITS_LIMIT + 1:
+    if count > DIGITS_LIMIT:
         raise LimitError(
             f"{path}: an integer of {count} digits; the limit is {DIGITS_LIMIT}"
         )

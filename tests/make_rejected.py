@@ -9,7 +9,7 @@ from __future__ import annotations
 from pathlib import Path
 
 from certgen.checker.codes import CODES
-from tests.rejected import TAMPERED, UNREADABLE, AS_WRITTEN_DIFFERS
+from tests.rejected import AS_WRITTEN_DIFFERS, TAMPERED, UNREADABLE
 
 FOLDER = Path(__file__).parents[1] / "samples" / "rejected"
 
@@ -36,7 +36,7 @@ def files() -> dict[str, str]:
     tampered = [t for t in TAMPERED if t.name in CODES] + [AS_WRITTEN_DIFFERS]
     rows = [(f"{t.name}.json", t.wrong, f"`{t.code}`", 1) for t in tampered]
     rows += [(f"{u.name}.json", u.wrong, "", u.status) for u in UNREADABLE]
-    lines = [f"| `{name}` | {wrong} | {code} | {status} |" for name, wrong, code, status in rows]
+    lines = ["| `{}` | {} | {} | {} |".format(*row) for row in rows]
     out = {f"{t.name}.json": t.text for t in [*tampered, *UNREADABLE]}
     return {**out, "README.md": HEAD + "\n".join(lines) + "\n"}
 

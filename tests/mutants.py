@@ -13,8 +13,10 @@ from dataclasses import dataclass
 from fractions import Fraction
 from typing import Any
 
-__all__ = ["AUTHORS_WORDS", "Mutant", "read_coefficients", "single_field_mutants", "transplants",
-           "write_coefficients"]
+__all__ = [
+    "AUTHORS_WORDS", "Mutant", "read_coefficients", "single_field_mutants", "transplants",
+    "write_coefficients",
+]  # fmt: skip
 
 AUTHORS_WORDS = frozenset(
     "$.claim.id $.claim.as_written $.claim.solution_as_written $.claim.title $.claim.note "
@@ -239,6 +241,6 @@ def write_coefficients(f: Coefficients) -> str:
             power = "" if k == 0 else "x" if k == 1 else f"x^{k}"
             size = str(abs(f[k]))
             piece = power if power and size == "1" else "*".join(filter(None, (size, power)))
-            sign = "-" if f[k] < 0 else "+"
-            pieces.append(f"{sign} {piece}" if pieces else piece if sign == "+" else f"-{piece}")
+            plus, minus = ("+ ", "- ") if pieces else ("", "-")
+            pieces.append((minus if f[k] < 0 else plus) + piece)
     return " ".join(pieces) or "0"

@@ -74,7 +74,9 @@ def pole(factor: str) -> MultiplePole:
 
 
 def root(factor: str) -> IrrationalResidue:
-    return IrrationalResidue(factor=P(factor), residue_polynomial=P("x^2 - 2"), rootless_prime=3)
+    return IrrationalResidue(
+        factor=P(factor), residue_polynomial=P("x^2 - 2"), rootless_prime=3
+    )
 
 
 def density(bound: str, *pairs: tuple[int, int]) -> DensityBound:

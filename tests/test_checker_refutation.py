@@ -10,7 +10,7 @@ import sympy
 
 from certgen.checker import check
 from certgen.checker.facts import NoAlgebraicFacts, PrimeStatus
-from certgen.errors import CertgenError
+from certgen.errors import CertgenError, LimitError
 from tests.handmade import (
     Json,
     certificate,
@@ -156,8 +156,9 @@ def test_counter_primes_that_are_not_proved_prime(p: str, arithmetic: Any) -> No
 def test_an_equation_that_is_not_in_lowest_terms(arithmetic: Any) -> None:
     """x*y' = x*y, and a common factor that one prime hides: nothing passes as reduced."""
     proof = refutation(
-        [("x", "1")], "2", [polynomial_part("1")], {"p": "2", "kind": "polynomial_part"}, None, "1"
-    )
+        [("x", "1")], "2", [polynomial_part("1")], {"p": "2", "kind": "polynomial_part"},
+        None, "1",
+    )  # fmt: skip
     assert code_of(text("x", "x", proof), arithmetic) == "not-lowest-terms"
     for p in ("2", "3", "5", "999999999989"):
         proof["lowest_terms_prime"] = p
@@ -428,6 +429,22 @@ def test_a_factor_that_is_not_irreducible_is_not_called_so() -> None:
     assert checked.facts.reduction.factor_is_irreducible is False  # type: ignore[union-attr]
 
 
+def test_irreducibility_of_a_long_factor_is_not_looked_at() -> None:
+    """Above degree 40 the checker says nothing about it."""
+    x = sympy.Symbol("x")
+    for degree, shown in ((39, True), (43, False)):
+        b = sympy.Poly(x**degree + x + 1, x, modulus=2)
+        s = sympy.invert(b.diff(), b)
+        witness = outside(
+            "2", f"x^{degree} + x + 1",
+            write_coefficients([int(c) % 2 for c in reversed(s.all_coeffs())]),
+        )  # fmt: skip
+        proof = refutation([(f"x^{degree} + x + 1", "1")], "2", [], witness, None, "1/2")
+        found = check(text(f"x^{degree} + x + 1", "1", proof), arithmetic="both").facts
+        irreducible = found.reduction.factor_is_irreducible  # type: ignore[union-attr]
+        assert irreducible == (b.is_irreducible if shown else None)
+
+
 def test_a_late_counter_prime() -> None:
     """(x^2 - 18001)*y' = y: 18001 is a square modulo all smaller good primes."""
     d = 18_001
@@ -466,6 +483,21 @@ def test_large_degrees_and_late_primes_show_no_strip() -> None:
 
 # --------------------------------------------------------------------------
 # hostile sizes
+
+
+@ARITHMETICS
+def test_a_long_reduction_modulo_a_factor_meets_a_limit(arithmetic: Any) -> None:
+    """A factor with 6,100 digits and 61 more poles: a LimitError before the division."""
+    c = "1" + "0" * 6_098 + "1"
+    b = f"x^63 + x^62 + {c}*x^61 + x^2 + x + "
+    proof = refutation(
+        [(f"x^2 + x + {c}", "1"), ("x^61 + 1", "1")], "2",
+        [polynomial_part("1"), irrational(f"x^2 + x + {c}", "x^2 - 2", "3")],
+        {"p": "2", "kind": "polynomial_part"}, None, "1",
+    )  # fmt: skip
+    long = text(b + c, f"{b}{c[:-1]}2", proof)
+    with pytest.raises(LimitError, match="too long"):
+        check(long, arithmetic=arithmetic)
 
 
 @ARITHMETICS

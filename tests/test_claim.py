@@ -94,7 +94,9 @@ def test_greek_names_are_letters() -> None:
     assert Letters(variable="theta", function="phi").function == "phi"
 
 
-@pytest.mark.parametrize("text", ["", "-a", "A", "a b", "a_b", "a" * 65, "../a", "a\n", "\u00e9"])
+@pytest.mark.parametrize(
+    "text", ["", "-a", "A", "a b", "a_b", "a" * 65, "../a", "a\n", "\u00e9"]
+)
 def test_ids_are_safe_file_names(text: str) -> None:
     """1 to 64 of a-z, 0-9 and '-', not beginning with '-'."""
     with pytest.raises(ClaimError, match="not valid"):

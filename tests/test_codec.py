@@ -104,8 +104,10 @@ def test_a_recursion_error_of_json_is_a_limit(monkeypatch: pytest.MonkeyPatch) -
         read_certificate("{}")
 
 
-BARE = {"3": "the bare number 3", "true": "a boolean", "null": "null", "[]": "a list",
-        "{}": "an object", "NaN": "the bare number NaN", "1e2": "the bare number 1e2"}  # fmt: skip
+BARE = {
+    "3": "the bare number 3", "true": "a boolean", "null": "null", "[]": "a list",
+    "{}": "an object", "NaN": "the bare number NaN", "1e2": "the bare number 1e2",
+}  # fmt: skip
 
 
 @pytest.mark.parametrize("literal", BARE)

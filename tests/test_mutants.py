@@ -120,7 +120,7 @@ def test_the_author_s_words_change_nothing_but_themselves() -> None:
 
 
 def test_the_mutants_are_many_and_different() -> None:
-    """At least 7,000 in all; none equals its certificate; all fields are reached."""
+    """At least 6,500 in all; none equals its certificate; all fields are reached."""
     total = 0
     for name in NAMES:
         texts = {stored(mutant.obj) for mutant in mutants(name)}
@@ -129,7 +129,7 @@ def test_the_mutants_are_many_and_different() -> None:
         paths = {mutant.path for mutant in mutants(name)}
         assert _paths(SOURCES[name], "$") <= paths
     print(f"{total} different mutants of {len(NAMES)} certificates")
-    assert total >= 7_000
+    assert total >= 6_500
 
 
 def _paths(value: object, path: str) -> set[str]:

@@ -10,6 +10,7 @@ exactly N over C(x): the orders N*rho_i at the roots have no common factor with 
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from fractions import Fraction
 from math import lcm
 
@@ -30,6 +31,7 @@ from certgen.checker.common import (
 from certgen.checker.primes import radical
 from certgen.claim import FirstOrderEquation, Power
 from certgen.errors import LimitError, RejectedError
+from certgen.polynomial import DEGREE_LIMIT, Polynomial
 
 __all__ = [
     "check_algebraic_solution",
@@ -99,6 +101,10 @@ def check_algebraic_solution(
     reject_unless(
         proof.degree == degree, "degree", f"{path}.degree", show(degree), proof.degree
     )
+    _require_degree(
+        (power.base.degree for power in solution), b.degree,
+        "denominator-identity", f"{path}.solution",
+    )  # fmt: skip
     m, v = logarithmic_derivative(arithmetic, solution)
     beta = b.leading() // v.leading()
     require_equal(v.times(beta), b, "denominator-identity", f"{path}.solution", "beta*V")
@@ -110,6 +116,15 @@ def check_algebraic_solution(
     _check_minimal_polynomial(proof, path)
     if proof.eisenstein is not None:
         _check_eisenstein(arithmetic, solution, v, proof.eisenstein, f"{path}.eisenstein")
+
+
+def _require_degree(degrees: Iterable[int], expected: int, code: str, path: str) -> None:
+    """Factors are counted before they are multiplied."""
+    found = sum(degrees)
+    reject_unless(
+        found == expected, code, path, f"factors of total degree {expected}",
+        f"total degree {found}",
+    )  # fmt: skip
 
 
 def _check_squarefree(v: ZPoly, p: int, path: str) -> None:
@@ -128,19 +143,21 @@ def _check_partial_fractions(
 ) -> None:
     """For each residue the displayed factors multiply to the base with that exponent."""
     path = f"{path}.partial_fractions"
-    groups: dict[Fraction, list[ZPoly]] = {}
+    groups: dict[Fraction, list[Polynomial]] = {}
     for term in proof.partial_fractions:
-        groups.setdefault(term.residue, []).append(to_z(arithmetic, term.factor))
-    bases = {power.exponent: to_z(arithmetic, power.base) for power in proof.solution}
+        groups.setdefault(term.residue, []).append(term.factor)
+    bases = {power.exponent: power.base for power in proof.solution}
     reject_unless(
         groups.keys() == bases.keys(), "partial-fractions", path,
         "exactly the exponents of the solution as residues", "other residues",
     )  # fmt: skip
     one = arithmetic.integer_polynomial([1])
     for residue, factors in groups.items():
-        product = fold(factors, lambda f, g: f * g, one)
+        base = bases[residue]
+        _require_degree((f.degree for f in factors), base.degree, "partial-fractions", path)
+        product = fold((to_z(arithmetic, f) for f in factors), lambda f, g: f * g, one)
         name = f"the base with exponent {show(residue)}"
-        require_equal(bases[residue], product, "partial-fractions", path, name)
+        require_equal(to_z(arithmetic, base), product, "partial-fractions", path, name)
 
 
 def _check_minimal_polynomial(proof: AlgebraicSolution, path: str) -> None:
@@ -225,6 +242,8 @@ def check_closed_form(
     """Reject unless the claimed product S satisfies S'/S = a/b, exactly."""
     a = to_z(arithmetic, equation.numerator)
     b = to_z(arithmetic, equation.denominator)
+    if sum(power.base.degree for power in closed_form) > DEGREE_LIMIT:
+        raise LimitError(f"{path}: a total degree above the limit of {DEGREE_LIMIT}")
     m, w = logarithmic_derivative(arithmetic, closed_form)
     degree = common_degree(closed_form)
     require_equal(
@@ -241,12 +260,17 @@ def check_disagreement(
 ) -> tuple[int, ...]:
     """At the roots of the factor g the residues of a/b and of S'/S differ.
 
-    `actual` has been checked.  Returns the orders m_j of the claimed bases along g:
-    g^m_j divides w_j and the cofactor is coprime to g, so that the residue of
-    S'/S = sum e_j w_j'/w_j is sum e_j m_j at every root of g.
+    `actual` has been checked; g is squarefree.  Returns the orders m_j of the
+    claimed bases along g: g^m_j divides w_j and the cofactor is coprime to g, so
+    that the residue of S'/S = sum e_j w_j'/w_j is sum e_j m_j at every root of g.
     """
     g = to_z(arithmetic, value.factor)
     require_prime_not_dividing(value.prime, g.leading(), f"{path}.prime")
+    image = g.modulo(value.prime)
+    reject_unless(
+        image.gcd(image.derivative()).degree == 0, "disagreement-factor",
+        f"{path}.factor", "a factor that is squarefree modulo the prime", value.factor,
+    )  # fmt: skip
     residue = _residue_along(arithmetic, g, actual, value.prime, path)
     reject_unless(
         residue == value.residue_of_equation, "disagreement-residue",

@@ -42,6 +42,9 @@ STRIP_DEGREE = 60
 
 STRIP_LENGTH = 12
 
+IRREDUCIBLE_DEGREE = 40
+"""Up to this degree it is tested whether a witness's factor is irreducible mod p."""
+
 SPOT_DEGREE = 200
 SPOT_POINTS = (2, 3, -2, 1, -1, 4, 5, -3)
 SPOT_BITS = 40  # about twelve digits: a pocket calculator
@@ -197,7 +200,8 @@ def _reduction(
         factor = to_mod(arithmetic, value.witness.factor, value.p)
         residue = to_mod(arithmetic, value.witness.residue, value.p)
         power = from_mod(residue.power(value.p, factor))
-        irreducible = is_irreducible(arithmetic, factor, value.p)
+        if factor.degree <= IRREDUCIBLE_DEGREE:
+            irreducible = is_irreducible(arithmetic, factor, value.p)
     return ReductionFacts(
         numerator=from_mod(reduced.numerator),
         denominator=from_mod(reduced.denominator),

@@ -110,7 +110,8 @@ class ReductionFacts:
     a = common_factor*numerator and b = common_factor*denominator mod p, with a
     monic common factor.  `derivative` is denominator' mod p.  For a residue
     witness: `residue_power` is residue^p mod its factor (it differs from the
-    residue), `factor_is_irreducible` whether the factor is irreducible mod p.
+    residue), `factor_is_irreducible` whether the factor is irreducible mod p (None
+    where its degree is above 40: not tested).
     """
 
     numerator: Polynomial

@@ -27,7 +27,7 @@ from certgen.checker.facts import ClosedFormFacts, DisagreementFacts, Facts
 from certgen.checker.refutation import check_no_algebraic_solution
 from certgen.claim import Power
 from certgen.codec import StoredCertificate, read_certificate
-from certgen.errors import RejectedError
+from certgen.errors import RejectedError, UnusableInputError
 
 __all__ = ["ArithmeticName", "CheckedCertificate", "check"]
 
@@ -87,11 +87,18 @@ def check(data: bytes | str, *, arithmetic: ArithmeticName | None = None) -> Che
     is recomputed from the claim in the text; the stored digest is compared last and
     is never a reason to accept.
 
-    Raises MalformedError, LimitError and UnsupportedVersionError as
+    Raises UnusableInputError where python-flint is asked for and missing,
+    MalformedError, LimitError and UnsupportedVersionError as
     `codec.read_certificate`, and RejectedError with a code of `codes.CODES`.
     """
     stored = read_certificate(data)
-    name = arithmetic or ("flint" if find_spec("flint") else "plain")
+    flint = find_spec("flint") is not None
+    name = arithmetic or ("flint" if flint else "plain")
+    if name != "plain" and not flint:
+        raise UnusableInputError(
+            f"the arithmetic '{name}' needs python-flint, which is not installed; "
+            "'plain' needs nothing"
+        )
     facts = _check_both(stored) if name == "both" else _run(load(name), stored)
     reject_unless(
         stored.digest == stored.stored_digest,

@@ -47,12 +47,14 @@ def _unpack(n: int, count: int, size: int) -> list[int]:
 def _product(f: list[int], g: list[int]) -> list[int]:
     if not f or not g:
         return []
-    if len(f) * len(g) <= _SCHOOL or min(len(f), len(g)) == 1:
+    terms_f = [(i, x) for i, x in enumerate(f) if x]
+    terms_g = [(j, y) for j, y in enumerate(g) if y]
+    # also where few terms are not zero: packing would blow up sparse operands
+    if len(terms_f) * len(terms_g) <= max(_SCHOOL, len(f) + len(g)):
         out = [0] * (len(f) + len(g) - 1)
-        for i, x in enumerate(f):
-            if x:
-                for j, y in enumerate(g):
-                    out[i + j] += x * y
+        for i, x in terms_f:
+            for j, y in terms_g:
+                out[i + j] += x * y
         return out
     bits = max(map(int.bit_length, f)) + max(map(int.bit_length, g))
     size = (bits + min(len(f), len(g)).bit_length() + 2 + 7) // 8

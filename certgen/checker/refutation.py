@@ -43,7 +43,7 @@ from certgen.checker.reduction import (
     reduce_fraction,
 )
 from certgen.claim import FirstOrderEquation
-from certgen.errors import RejectedError
+from certgen.errors import LimitError, RejectedError
 from certgen.polynomial import Polynomial
 
 __all__ = [
@@ -60,8 +60,19 @@ P_CURVATURE_LIMIT = 40_000
 RESIDUE_POLYNOMIAL_LIMIT = 400
 """The largest product of the degrees of a factor and of its residue polynomial."""
 
+RESIDUE_BITS = 2_000_000
+RESIDUE_WORK = 5_000_000_000
+"""How large the reduction of a and b' modulo a factor may become (LimitError beyond):
+
+with s = deg b - deg g + 1 and h the bits of the largest coefficient of the factor g,
+s*h*(degree of the residue polynomial) and s*s*h*(deg g).
+"""
+
 FROBENIUS_ORDER_LIMIT = 100
 """The largest order of Frobenius in a witness of the density bound."""
+
+WITNESS_LIMIT = 50
+"""The largest number of witnesses of the density bound."""
 
 
 def check_no_algebraic_solution(
@@ -211,6 +222,13 @@ def _check_obstructions(
         bool(parts) == (a.degree >= b.degree), "obstructions", path,
         "a polynomial part exactly when deg a >= deg b", f"{len(parts)} of them",
     )  # fmt: skip
+    irrational = sum(
+        o.factor.degree for o in proof.obstructions if isinstance(o, IrrationalResidue)
+    )
+    reject_unless(
+        irrational <= b.degree, "obstructions", path,
+        "factors with irrational residues of total degree at most deg b", irrational,
+    )  # fmt: skip
     for i, obstruction in enumerate(proof.obstructions):
         if isinstance(obstruction, PolynomialPart):
             _check_quotient(arithmetic, a, b, obstruction.quotient, f"{path}[{i}].quotient")
@@ -250,13 +268,8 @@ def _check_irrational(
         "irrational-residue", f"{path}.factor",
         "a divisor of a factor of multiplicity 1", value.factor,
     )  # fmt: skip
+    _check_size(b, value, f"{path}.residue_polynomial")
     _check_rootless(arithmetic, value, f"{path}.rootless_prime")
-    reject_unless(
-        value.factor.degree * value.residue_polynomial.degree <= RESIDUE_POLYNOMIAL_LIMIT,
-        "irrational-residue", f"{path}.residue_polynomial",
-        f"degrees whose product is at most {RESIDUE_POLYNOMIAL_LIMIT}",
-        value.residue_polynomial,
-    )  # fmt: skip
     numerator, derivative = reduce_residue(arithmetic, a, b, g)
     power = arithmetic.integer_polynomial([1])
     total = arithmetic.integer_polynomial([])
@@ -268,6 +281,18 @@ def _check_irrational(
         f"{path}.residue_polynomial", "a polynomial that vanishes at the residues",
         value.residue_polynomial,
     )  # fmt: skip
+
+
+def _check_size(b: ZPoly, value: IrrationalResidue, path: str) -> None:
+    """Bound the work before it is done; what is printed is far below."""
+    g, n = value.factor, value.residue_polynomial.degree
+    reject_unless(
+        g.degree * n <= RESIDUE_POLYNOMIAL_LIMIT, "irrational-residue", path,
+        f"degrees whose product is at most {RESIDUE_POLYNOMIAL_LIMIT}", g.degree * n,
+    )  # fmt: skip
+    steps, bits = b.degree - g.degree + 1, max(map(int.bit_length, g.numerators))
+    if steps * bits * n > RESIDUE_BITS or steps * steps * bits * g.degree > RESIDUE_WORK:
+        raise LimitError(f"{path}: the reduction modulo the factor is too long")
 
 
 def reduce_residue(
@@ -353,6 +378,7 @@ def _check_density(
             "bound 1 without witnesses", value.bound,
         )  # fmt: skip
         return
+    _check_witness_sizes(value, path)
     bound = 1 - Fraction(1, lcm(*(w.order for w in value.witnesses)))
     bound = max(bound, Fraction(1, 2))
     reject_unless(
@@ -367,12 +393,21 @@ def _check_density(
         _check_frobenius_order(a, b, witness.p, witness.order, f"{path}.witnesses[{i}].order")
 
 
+def _check_witness_sizes(value: DensityBound, path: str) -> None:
+    reject_unless(
+        len(value.witnesses) <= WITNESS_LIMIT, "density", f"{path}.witnesses",
+        f"at most {WITNESS_LIMIT} witnesses", len(value.witnesses),
+    )  # fmt: skip
+    for i, witness in enumerate(value.witnesses):
+        reject_unless(
+            witness.order <= FROBENIUS_ORDER_LIMIT, "density",
+            f"{path}.witnesses[{i}].order",
+            f"an order of at most {FROBENIUS_ORDER_LIMIT}", witness.order,
+        )  # fmt: skip
+
+
 def _check_frobenius_order(a: ZPoly, b: ZPoly, q: int, order: int, path: str) -> None:
     """The least t with s^(q^t) = s at every pole is `order`, s the residue."""
-    reject_unless(
-        order <= FROBENIUS_ORDER_LIMIT, "density", path,
-        f"an order of at most {FROBENIUS_ORDER_LIMIT}", order,
-    )  # fmt: skip
     reduced = reduce_fraction(a, b, q)
     poles = reduced.denominator.degree >= 1 and has_simple_poles(reduced)
     reject_unless(

@@ -78,12 +78,12 @@ def _find_coprime_prime(
     bases: Sequence[tuple[IntegerPolynomial, Fraction]],
     claimed: Sequence[tuple[IntegerPolynomial, Fraction]],
 ) -> int:
-    """The smallest q, not dividing lc(g), modulo which g is coprime to all other parts.
+    """The smallest q, not dividing lc(g), modulo which g is squarefree and isolated.
 
-    Those are the claimed bases without g, and where g is no pole of the equation
+    Isolated: coprime to the claimed bases without g, and where g is no pole of the equation
     the product of the actual bases.
     """
-    others = [order_along(g, w)[1] for w, _ in claimed]
+    others = [g.derivative(), *(order_along(g, w)[1] for w, _ in claimed)]
     if _residue_along(g, bases) == 0:
         others.append(product(v for v, _ in bases))
     for q in primes():
