@@ -466,7 +466,7 @@ def check_eisenstein(solution: Any, v: Poly, x0: int, constant: int) -> None:
     need(value(v, x0) != 0, "eisenstein-point")
     for f, rho in solution:
         d = rho.denominator
-        c = value(f, x0) * (1 if d == 1 else d * (radical(d) if d < 10**12 else d))
+        c = value(f, x0) * (1 if d == 1 else d * (radical(d) if d < 10**9 else d))
         if constant % c == 0:
             continue
         need(len(f) <= 101, "eisenstein-constant")

@@ -14,7 +14,7 @@ from sympy.abc import x as X
 from certgen.checker.arithmetic import fold, load
 from certgen.checker.describe import is_irreducible
 from certgen.checker.plain import _product
-from certgen.checker.primes import PRIME_LIMIT, is_prime, primes, radical, require_prime
+from certgen.checker.primes import is_prime, primes, radical, require_prime
 from certgen.checker.reduction import is_good, is_p_curvature_zero, reduce_fraction
 from certgen.errors import RejectedError
 
@@ -227,9 +227,9 @@ def test_what_is_not_proved_prime_is_rejected(n: int) -> None:
 
 def test_radicals_are_those_of_sympy() -> None:
     """The product of the primes, and n itself from the limit on."""
-    for n in [*range(1, 500), 2**30, 3**12 * 7, 999_983 * 4, 6**6]:
+    for n in [*range(1, 500), 2**29, 3**12 * 7, 999_983 * 4, 6**6]:
         assert radical(n) == sympy.prod(sympy.primefactors(n))
-    assert radical(PRIME_LIMIT) == PRIME_LIMIT
+    assert radical(10**9) == 10**9
     assert radical(2**100) == 2**100
 
 

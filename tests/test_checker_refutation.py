@@ -312,6 +312,16 @@ def test_densities(arithmetic: Any) -> None:
 
 
 @ARITHMETICS
+def test_witnesses_of_the_density_have_a_limit(arithmetic: Any) -> None:
+    """x^2 - x - 1 is irreducible modulo the primes 2 and 3 mod 5; 50 of them are enough."""
+    inert = [str(p) for p in sympy.primerange(3, 1000) if p % 5 in (2, 3)]
+    for count, code in ((50, ""), (51, "density")):
+        witnesses = [{"p": p, "order": "2"} for p in inert[:count]]
+        changed = drifting(density={"bound": "1/2", "witnesses": witnesses})
+        assert code_of(changed, arithmetic) == code
+
+
+@ARITHMETICS
 def test_with_a_double_pole_the_density_is_one(arithmetic: Any) -> None:
     """And witnesses of Frobenius have no place there."""
     obj = handmade("whirlpool")

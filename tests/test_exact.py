@@ -84,15 +84,15 @@ def test_chinese_remainders(value: int) -> None:
     assert integers.symmetric(-value, 2 * 7**20) == -value
 
 
-@given(st.integers(1, 10**12))
+@given(st.integers(1, 10**9 - 1))
 def test_radical(n: int) -> None:
     """The radical is the product of sympy's prime factors."""
     assert integers.radical(n) == sympy.prod(sympy.primefactors(n))
 
 
 def test_radical_of_huge_numbers() -> None:
-    """Above 10^12 the number stands for itself."""
-    assert integers.radical(10**12) == 10 and integers.radical(10**12 + 1) == 10**12 + 1
+    """From 10^9 on the number stands for itself."""
+    assert integers.radical(10**8) == 10 and integers.radical(10**9) == 10**9
 
 
 # ------------------------------------------------------------------ polynomials

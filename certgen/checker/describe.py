@@ -5,6 +5,7 @@ Called after the rules have accepted; nothing here decides anything.
 
 from __future__ import annotations
 
+from itertools import islice
 from math import isqrt, prod
 
 from certgen.certificate import (
@@ -26,7 +27,7 @@ from certgen.checker.facts import (
     PrimeStatus,
     ReductionFacts,
 )
-from certgen.checker.primes import primes
+from certgen.checker.primes import primes, primes_below
 from certgen.checker.reduction import is_good, is_p_curvature_zero, reduce_fraction
 from certgen.checker.refutation import reduce_residue, squarefree_part
 from certgen.claim import FirstOrderEquation
@@ -68,7 +69,7 @@ def describe_algebraic_solution(
         beta=b.leading() // prod(base.leading() for base in bases),
         numerators=numerators,
         derivatives=tuple(from_z(base.derivative()) for base in bases),
-        products=_products(bases, numerators, v) if small else None,
+        products=_products(bases, numerators) if small else None,
         identity=from_z(a.times(degree)) if small else None,
         spot=_spot(a, b, bases, numerators) if spotted else None,
         squarefree_degree=sum(base.degree for base in bases),
@@ -77,13 +78,14 @@ def describe_algebraic_solution(
 
 
 def _products(
-    bases: list[ZPoly], numerators: tuple[int, ...], v: ZPoly
+    bases: list[ZPoly], numerators: tuple[int, ...]
 ) -> tuple[Polynomial, ...]:
     out = []
-    for base, n in zip(bases, numerators, strict=True):
-        others = v.exact_quotient(base)
-        if others is not None:  # a base divides the product of all bases
-            out.append(from_z((base.derivative() * others).times(n)))
+    for i, n in enumerate(numerators):
+        product = bases[i].derivative().times(n)
+        for j, other in enumerate(bases):
+            product = product * other if j != i else product
+        out.append(from_z(product))
     return tuple(out)
 
 
@@ -122,8 +124,7 @@ def _status(a: ZPoly, b: ZPoly, radical: ZPoly, q: int) -> PrimeStatus:
 
 
 def _strip(a: ZPoly, b: ZPoly, radical: ZPoly, length: int) -> tuple[PrimeStatus, ...]:
-    ascending = primes()
-    return tuple(_status(a, b, radical, next(ascending)) for _ in range(length))
+    return tuple(_status(a, b, radical, q) for q in islice(primes(), length))
 
 
 # --------------------------------------------------------------------------
@@ -136,13 +137,10 @@ def describe_no_algebraic_solution(
     a = to_z(arithmetic, equation.numerator)
     b = to_z(arithmetic, equation.denominator)
     radical = squarefree_part(arithmetic, proof)
-    smaller = []
-    for q in primes():
-        if q >= proof.counter_prime.p:
-            break
-        smaller.append(
-            PrimeStatus(p=q, status="zero" if is_good(b, radical, q) else "bad")
-        )
+    smaller = [
+        PrimeStatus(p=q, status="zero" if is_good(b, radical, q) else "bad")
+        for q in primes_below(proof.counter_prime.p)
+    ]
     length = max(STRIP_LENGTH, len(smaller) + 1)
     show_strip = b.degree <= STRIP_DEGREE and length <= 4 * STRIP_LENGTH
     return NoAlgebraicFacts(

@@ -7,10 +7,13 @@ from itertools import count
 
 from certgen.errors import RejectedError
 
-__all__ = ["PRIME_LIMIT", "is_prime", "primes", "radical", "require_prime"]
+__all__ = ["PRIME_LIMIT", "is_prime", "primes", "primes_below", "radical", "require_prime"]
 
 PRIME_LIMIT = 10**12
 """Primes from here on are not accepted: trial division would take too long."""
+
+RADICAL_LIMIT = 10**9
+"""Numbers from here on are not factored."""
 
 
 def is_prime(n: int) -> bool:
@@ -47,12 +50,17 @@ def primes() -> Iterator[int]:
     return (n for n in count(2) if is_prime(n))
 
 
+def primes_below(n: int) -> Iterator[int]:
+    """The primes below n in ascending order."""
+    return (k for k in range(2, n) if is_prime(k))
+
+
 def radical(n: int) -> int:
-    """The product of the primes dividing n >= 1, or n itself from PRIME_LIMIT on.
+    """The product of the primes dividing n >= 1, or n itself from RADICAL_LIMIT on.
 
     Either is divisible by every prime that divides n, which is all its user needs.
     """
-    if n >= PRIME_LIMIT:
+    if n >= RADICAL_LIMIT:
         return n
     out, rest, d = 1, n, 2
     while d * d <= rest:

@@ -32,7 +32,7 @@ from certgen.checker.common import (
     to_mod,
     to_z,
 )
-from certgen.checker.primes import primes, require_prime
+from certgen.checker.primes import primes_below, require_prime
 from certgen.checker.reduction import (
     Reduced,
     frobenius_fixes_residues,
@@ -194,9 +194,7 @@ def _check_residue_witness(
 
 def _check_smallest(a: ZPoly, b: ZPoly, radical: ZPoly, p: int, path: str) -> None:
     """At every smaller good prime the p-curvature is zero."""
-    for q in primes():
-        if q >= p:
-            return
+    for q in primes_below(p):
         if is_good(b, radical, q) and not is_p_curvature_zero(a, b, q):
             raise RejectedError("not-smallest", path, str(q), str(p))
 

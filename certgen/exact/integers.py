@@ -9,7 +9,7 @@ from flint import fmpz
 
 __all__ = ["combine_residues", "radical", "reconstruct_rational", "symmetric"]
 
-_FACTORED_LIMIT = 10**12
+_FACTORED_LIMIT = 10**9
 
 
 def symmetric(value: int, modulus: int) -> int:
@@ -50,12 +50,12 @@ def combine_residues(
 
 
 def radical(n: int) -> int:
-    """Return the product of the primes dividing n >= 1; n itself above 10^12.
+    """Return the product of the primes dividing n >= 1; n itself from 10^9 on.
 
     Where it is used, any multiple of the radical that divides a power of it is
     sound, so numbers too large to be factored at once stand for themselves.
     """
-    if n > _FACTORED_LIMIT:
+    if n >= _FACTORED_LIMIT:
         return n
     result = 1
     for prime, _ in fmpz(n).factor() if n > 1 else ():

@@ -68,7 +68,8 @@ def pari(a: flint.fmpz_poly, b: flint.fmpz_poly) -> float | None:
         "print(getwalltime()-t)\n"
     )
     out = subprocess.run(
-        ["gp", "-q", "-f"], input=script, capture_output=True, text=True, timeout=900, check=True
+        ["gp", "-q", "-f"], input=script, capture_output=True, text=True, timeout=900,
+        check=True,
     )
     return max(int(out.stdout.split()[-1]), 1) / 1000
 
