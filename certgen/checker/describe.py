@@ -5,8 +5,11 @@ Called after the rules have accepted; nothing here decides anything.
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+from fractions import Fraction
 from itertools import islice
 from math import isqrt, prod
+from typing import cast
 
 from certgen.certificate import (
     AlgebraicSolution,
@@ -21,15 +24,18 @@ from certgen.checker.arithmetic import Arithmetic, ModPoly, ZPoly, fold
 from certgen.checker.common import from_mod, from_z, to_mod, to_z
 from certgen.checker.facts import (
     AlgebraicFacts,
+    Bezout,
     IdentitySpot,
     IrrationalResidueFacts,
     NoAlgebraicFacts,
     PrimeStatus,
+    ProductSpot,
     ReductionFacts,
+    RootValues,
 )
 from certgen.checker.primes import primes, primes_below
 from certgen.checker.reduction import is_good, is_p_curvature_zero, reduce_fraction
-from certgen.checker.refutation import reduce_residue, squarefree_part
+from certgen.checker.refutation import reduce_residue, squarefree_part, vanishing_form
 from certgen.claim import FirstOrderEquation
 from certgen.polynomial import Polynomial
 
@@ -42,6 +48,9 @@ STRIP_DEGREE = 60
 """Up to this degree of b the first STRIP_LENGTH primes are classified."""
 
 STRIP_LENGTH = 12
+
+BEZOUT_DEGREE = 12
+"""Up to this degree coprimality modulo a prime is shown by a Bezout line."""
 
 IRREDUCIBLE_DEGREE = 40
 """Up to this degree it is tested whether a witness's factor is irreducible mod p."""
@@ -63,6 +72,7 @@ def describe_algebraic_solution(
     small = b.degree <= DISPLAY_DEGREE
     one = arithmetic.integer_polynomial([1])
     v = fold(bases, lambda f, g: f * g, one) if b.degree <= STRIP_DEGREE else one
+    factors = [term.factor for term in proof.partial_fractions] if small else []
     spotted = bases and b.degree <= SPOT_DEGREE
     return AlgebraicFacts(
         degree=degree,
@@ -73,6 +83,9 @@ def describe_algebraic_solution(
         identity=from_z(a.times(degree)) if small else None,
         spot=_spot(a, b, bases, numerators) if spotted else None,
         squarefree_degree=sum(base.degree for base in bases),
+        bezout=_bezout(arithmetic, v, v.derivative(), proof.squarefree_prime),
+        b_derivative=from_z(b.derivative()) if small else None,
+        root_values=tuple(_root_values(equation, factor) for factor in factors),
         strip=_strip(a, b, v, STRIP_LENGTH) if b.degree <= STRIP_DEGREE else (),
     )
 
@@ -87,6 +100,41 @@ def _products(
             product = product * other if j != i else product
         out.append(from_z(product))
     return tuple(out)
+
+
+def _root_values(equation: FirstOrderEquation, factor: Polynomial) -> RootValues | None:
+    if factor.degree != 1:
+        return None
+    root = Fraction(-factor.numerators[0], factor.numerators[1])
+    b = equation.denominator.numerators
+    return RootValues(
+        root=root,
+        a=_value(equation.numerator.numerators, root),
+        derivative=_value([k * c for k, c in enumerate(b)][1:], root),
+    )
+
+
+def _value(coefficients: Sequence[int], x: Fraction) -> Fraction:
+    out = Fraction(0)
+    for c in reversed(coefficients):
+        out = out * x + c
+    return out
+
+
+def _bezout(arithmetic: Arithmetic, f: ZPoly, g: ZPoly, p: int) -> Bezout | None:
+    """u, v with u*f + v*g = 1 modulo p, for coprime f and g (Euclid)."""
+    if not (1 <= f.degree <= BEZOUT_DEGREE and 0 <= g.degree <= BEZOUT_DEGREE):
+        return None
+    one = arithmetic.modular_polynomial([1], p)
+    r, next_r = f.modulo(p), g.modulo(p)
+    u, next_u, v, next_v = one, one - one, one - one, one
+    while next_r.degree >= 0:
+        quotient = r.quotient(next_r)
+        r, next_r = next_r, r - quotient * next_r
+        u, next_u = next_u, u - quotient * next_u
+        v, next_v = next_v, v - quotient * next_v
+    scale = one.quotient(r)
+    return Bezout(p=p, left=from_mod(u * scale), right=from_mod(v * scale))
 
 
 def _spot(
@@ -154,10 +202,11 @@ def describe_no_algebraic_solution(
             for o in proof.obstructions
             if isinstance(o, IrrationalResidue)
         ),
-        reduction=_reduction(arithmetic, a, b, proof.counter_prime),
+        reduction=_reduction(arithmetic, a, b, radical, proof.counter_prime),
         smaller_primes=tuple(smaller),
         strip=_strip(a, b, radical, length) if show_strip else (),
         density=proof.density.bound,
+        lowest_terms=_bezout(arithmetic, b, a, proof.lowest_terms_prime),
     )
 
 
@@ -182,15 +231,28 @@ def _irrational(
     if value.residue_polynomial.degree == 2:
         c0, c1, c2 = value.residue_polynomial.numerators
         discriminant = c1 * c1 - 4 * c0 * c2
+    factor = to_z(arithmetic, value.factor)
+    total = vanishing_form(arithmetic, value.residue_polynomial, numerator, derivative)
+    cofactor = cast(ZPoly, total.exact_quotient(factor))  # the rules saw that it divides
+    point = min(SPOT_POINTS, key=lambda x: (factor.value(x) == 0, abs(total.value(x))))
     return IrrationalResidueFacts(
         numerator=from_z(numerator),
         derivative=from_z(derivative),
         discriminant=discriminant,
+        cofactor=from_z(cofactor),
+        spot=ProductSpot(
+            point=point,
+            numerator=numerator.value(point),
+            derivative=derivative.value(point),
+            total=total.value(point),
+            factor=factor.value(point),
+            cofactor=cofactor.value(point),
+        ),
     )
 
 
 def _reduction(
-    arithmetic: Arithmetic, a: ZPoly, b: ZPoly, value: CounterPrime
+    arithmetic: Arithmetic, a: ZPoly, b: ZPoly, radical: ZPoly, value: CounterPrime
 ) -> ReductionFacts:
     reduced = reduce_fraction(a, b, value.p)
     power = irreducible = None
@@ -207,6 +269,7 @@ def _reduction(
         derivative=from_mod(reduced.denominator.derivative()),
         residue_power=power,
         factor_is_irreducible=irreducible,
+        bezout=_bezout(arithmetic, radical, radical.derivative(), value.p),
     )
 
 

@@ -15,6 +15,7 @@ from certgen.polynomial import Polynomial
 
 __all__ = [
     "AlgebraicFacts",
+    "Bezout",
     "ClosedFormFacts",
     "DisagreementFacts",
     "Facts",
@@ -22,7 +23,9 @@ __all__ = [
     "IrrationalResidueFacts",
     "NoAlgebraicFacts",
     "PrimeStatus",
+    "ProductSpot",
     "ReductionFacts",
+    "RootValues",
 ]
 
 
@@ -52,14 +55,35 @@ class IdentitySpot:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
+class Bezout:
+    """left*f + right*g = 1 modulo the prime p; coefficients from 0 to p - 1."""
+
+    p: int
+    left: Polynomial
+    right: Polynomial
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class RootValues:
+    """The values of a and b' at the rational root of a linear factor."""
+
+    root: Fraction
+    a: Fraction
+    derivative: Fraction
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
 class AlgebraicFacts:
     """`AlgebraicSolution`: the split identity b = beta*V, N*a = beta*sum n_i v_i' V/v_i.
 
     `numerators` are the n_i = N*rho_i; `derivatives` the v_i'; `products` the
     n_i*v_i'*V/v_i expanded, and `identity` both sides N*a of the second
     identity, or None where the degree of b is above 40 (`spot` is None above 200 or
-    where b vanishes at all points tried).  `squarefree_degree` is deg V; `strip` the
-    first primes, empty where the degree of b is above 60.
+    where b vanishes at all points tried).  `squarefree_degree` is deg V; `bezout` is
+    for V and V' modulo the squarefree prime, None where V is constant or of degree
+    above 12.  `b_derivative` is b' and `root_values` has one entry for each displayed
+    factor, None for those that are not linear; both are None and empty above degree
+    40.  `strip` has the first primes, empty where the degree of b is above 60.
     """
 
     degree: int
@@ -70,6 +94,9 @@ class AlgebraicFacts:
     identity: Polynomial | None
     spot: IdentitySpot | None
     squarefree_degree: int
+    bezout: Bezout | None
+    b_derivative: Polynomial | None
+    root_values: tuple[RootValues | None, ...]
     strip: tuple[PrimeStatus, ...]
 
 
@@ -90,17 +117,36 @@ class ClosedFormFacts:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
+class ProductSpot:
+    """Values at the integer `point`: `total` = `factor` * `cofactor`.
+
+    `numerator` and `derivative` are A and B there, so that the total can be
+    computed from them and the residue polynomial.
+    """
+
+    point: int
+    numerator: int
+    derivative: int
+    total: int
+    factor: int
+    cofactor: int
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
 class IrrationalResidueFacts:
     """For one `IrrationalResidue` obstruction, in the order of the certificate.
 
     `numerator` and `derivative`: A and B in Z[x] of degree below deg g with
     A/B = a/b' at the roots of the factor g.  `discriminant` of a quadratic residue
-    polynomial (not a square), else None.
+    polynomial (not a square), else None.  With R the residue polynomial, of degree n,
+    sum R_k A^k B^(n-k) = g*`cofactor`; `spot` has this identity at one integer.
     """
 
     numerator: Polynomial
     derivative: Polynomial
     discriminant: int | None
+    cofactor: Polynomial
+    spot: ProductSpot
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -111,7 +157,8 @@ class ReductionFacts:
     monic common factor.  `derivative` is denominator' mod p.  For a residue
     witness: `residue_power` is residue^p mod its factor (it differs from the
     residue), `factor_is_irreducible` whether the factor is irreducible mod p (None
-    where its degree is above 40: not tested).
+    where its degree is above 40: not tested).  `bezout` is for the squarefree part
+    of b and its derivative modulo p, None where it is constant or of degree above 12.
     """
 
     numerator: Polynomial
@@ -120,11 +167,15 @@ class ReductionFacts:
     derivative: Polynomial
     residue_power: Polynomial | None
     factor_is_irreducible: bool | None
+    bezout: Bezout | None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class NoAlgebraicFacts:
     """`NoAlgebraicSolution`: what was recomputed for the refutation.
+
+    `lowest_terms` is for b and a, in this order, modulo the lowest-terms prime, None
+    where b is constant or a degree above 12.
 
     `smaller_primes` has the status (bad or zero) of every prime below the
     counter-prime; `strip` the first primes through at least the counter-prime or
@@ -138,6 +189,7 @@ class NoAlgebraicFacts:
     smaller_primes: tuple[PrimeStatus, ...]
     strip: tuple[PrimeStatus, ...]
     density: Fraction
+    lowest_terms: Bezout | None
 
 
 Facts = AlgebraicFacts | ClosedFormFacts | NoAlgebraicFacts

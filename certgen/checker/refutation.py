@@ -52,6 +52,7 @@ __all__ = [
     "check_no_algebraic_solution",
     "reduce_residue",
     "squarefree_part",
+    "vanishing_form",
 ]
 
 P_CURVATURE_LIMIT = 40_000
@@ -269,11 +270,7 @@ def _check_irrational(
     _check_size(b, value, f"{path}.residue_polynomial")
     _check_rootless(arithmetic, value, f"{path}.rootless_prime")
     numerator, derivative = reduce_residue(arithmetic, a, b, g)
-    power = arithmetic.integer_polynomial([1])
-    total = arithmetic.integer_polynomial([])
-    for c in reversed(value.residue_polynomial.numerators):
-        total = total * numerator + power.times(c)
-        power = power * derivative
+    total = vanishing_form(arithmetic, value.residue_polynomial, numerator, derivative)
     reject_unless(
         total.exact_quotient(g) is not None, "irrational-residue",
         f"{path}.residue_polynomial", "a polynomial that vanishes at the residues",
@@ -303,6 +300,18 @@ def reduce_residue(
         _scaled_remainder(arithmetic, a, g, steps),
         _scaled_remainder(arithmetic, derivative, g, steps),
     )
+
+
+def vanishing_form(
+    arithmetic: Arithmetic, polynomial: Polynomial, numerator: ZPoly, derivative: ZPoly
+) -> ZPoly:
+    """sum R_k A^k B^(n-k): zero where A/B is a root of R, B not zero."""
+    power = arithmetic.integer_polynomial([1])
+    total = arithmetic.integer_polynomial([])
+    for c in reversed(polynomial.numerators):
+        total = total * numerator + power.times(c)
+        power = power * derivative
+    return total
 
 
 def _scaled_remainder(arithmetic: Arithmetic, f: ZPoly, g: ZPoly, steps: int) -> ZPoly:
