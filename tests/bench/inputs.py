@@ -76,11 +76,11 @@ def equation(a: fmpz_poly, b: fmpz_poly) -> FirstOrderEquation:
 
 
 def claim(equation: FirstOrderEquation, name: str, asserts: str) -> FirstOrderClaim:
-    """A claim about every solution, written canonically."""
+    """A claim about every solution."""
     return FirstOrderClaim(
         id=name,
         equation=equation,
-        as_written=str(equation),
+        as_written="a benchmark",
         letters=Letters(),
         asserts=asserts,  # type: ignore[arg-type]
     )
