@@ -9,6 +9,7 @@ from __future__ import annotations
 
 import difflib
 import os
+import re
 import tomllib
 from typing import Any, cast
 
@@ -21,6 +22,8 @@ __all__ = ["FILE_LIMIT", "make_claim", "read_claims"]
 
 FILE_LIMIT = 16 * 1024 * 1024
 """The largest size of a file of claims, in bytes."""
+
+_RESERVED = re.compile(r"con|prn|aux|nul|(?:com|lpt)[0-9]")
 
 _KEYS = ("id", "equation", "asserts", "subject", "solution", "title", "note")
 
@@ -49,6 +52,10 @@ def make_claim(
     powers = _read_solution(solution, read.letters, where)
     if id is None:
         id = default_id(read.equation, asserts, subject, powers)
+    if _RESERVED.fullmatch(id):
+        raise ClaimError(
+            f"{where}the id '{id}' is a reserved file name on some machines; choose another"
+        )
     try:
         return FirstOrderClaim(
             id=id,

@@ -3,12 +3,16 @@
 from __future__ import annotations
 
 import json
+import re
 import tomllib
 from pathlib import Path
 
 import pytest
+import sympy
 
 from certgen.cli import main
+
+X = sympy.Symbol("x")
 
 SAMPLES = Path(__file__).parent.parent / "samples"
 STORED = SAMPLES / "certificates"
@@ -52,6 +56,38 @@ def test_each_sample_has_the_verdict_of_its_story(name: str) -> None:
     """All claims hold but the two that are wrong on purpose."""
     verdict = json.loads((STORED / f"{name}.json").read_text())["verdict"]
     assert verdict == ("refuted" if name in WRONG else "proved")
+
+
+@pytest.mark.parametrize("name", IDS)
+def test_sympy_differentiates_the_solution_of_each_sample(name: str) -> None:
+    """y = product base^exponent satisfies b*y' = a*y, by sympy's derivative.
+
+    The polynomials are read coefficient by coefficient with the standard library.
+    """
+    stored = json.loads((STORED / f"{name}.json").read_text())
+    proof = stored["proof"].get("actual", stored["proof"])
+    match = re.fullmatch(r"\((.*)\)\*y' = \((.*)\)\*y", stored["claim"]["equation"])
+    assert match is not None
+    if "solution" not in proof:
+        assert proof["kind"] == "no-algebraic-solution"
+        return
+    y = sympy.prod(
+        polynomial(power["base"]) ** sympy.Rational(power["exponent"])
+        for power in proof["solution"]
+    )
+    b, a = polynomial(match[1]), polynomial(match[2])
+    assert sympy.simplify(sympy.together((b * sympy.diff(y, X) - a * y) / y)) == 0
+
+
+def polynomial(text: str) -> sympy.Expr:
+    """An integral polynomial of the strict notation, as a sympy expression."""
+    total = sympy.Integer(0)
+    for term in text.replace(" - ", " + -").split(" + "):
+        match = re.fullmatch(r"(-?)([0-9]*)\*?(x?)\^?([0-9]*)", term)
+        assert match is not None
+        exponent = int(match[4] or 1) if match[3] else 0
+        total += int(match[1] + (match[2] or "1")) * X**exponent
+    return total
 
 
 @pytest.mark.parametrize("arithmetic", ["plain", "flint", "both"])

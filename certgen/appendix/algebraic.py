@@ -13,6 +13,7 @@ from certgen.appendix.formulas import (
     LINE,
     WRITTEN_LINES,
     Printer,
+    is_long_exponent,
     is_omitted,
     lines_of,
     signed_factor,
@@ -89,6 +90,7 @@ class Algebraic:
     rational: bool
     one_base: bool
     degree: Latex
+    degree_as_exponent: Latex
     beta: Latex
     beta_is_one: bool
     weight_is_one: bool
@@ -146,6 +148,8 @@ def build_algebraic_parts(
         rational=proof.degree == 1,
         one_base=len(proof.solution) == 1,
         degree=integer(facts.degree),
+        degree_as_exponent=sym.N if is_long_exponent(Fraction(facts.degree))
+        else integer(facts.degree),
         beta=integer(facts.beta),
         beta_is_one=facts.beta == 1,
         weight_is_one=facts.numerators == (1,),
@@ -192,7 +196,7 @@ def _symbolic(
 ) -> str:
     """v_1^e_1 v_2^e_2 ..., or one product sign when there are too many."""
     if len(exponents) <= FACTORS_LIMIT:
-        return symbolic_product(sym.v, exponents)
+        return symbolic_product(sym.v, exponents, exponent)
     text = rf"\prod{condition} {sym.v}_i^{{{exponent}}}"
     return text.replace("_i", f"_{sym.i}")
 

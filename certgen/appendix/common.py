@@ -4,7 +4,13 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from certgen.appendix.formulas import Printer, prose, symbolic_product, typewriter
+from certgen.appendix.formulas import (
+    Printer,
+    is_long_exponent,
+    prose,
+    symbolic_product,
+    typewriter,
+)
 from certgen.appendix.symbols import Symbols, choose_symbols
 from certgen.checker import CheckedCertificate
 from certgen.claim import FirstOrderClaim
@@ -31,6 +37,7 @@ class ClaimedPower:
     index: Latex
     base: Latex
     exponent: Latex
+    is_long: bool
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -148,13 +155,14 @@ def _claimed(
     exponents = [power.exponent for power in claim.solution]
     powers = tuple(
         ClaimedPower(
-            index=Latex(k),
+            index=Latex(f"_{{{k}}}" if len(claim.solution) > 1 else ""),
             base=printer.polynomial(f"claimed-base-{k}", power.base),
             exponent=rational(power.exponent),
+            is_long=is_long_exponent(power.exponent),
         )
         for k, power in enumerate(claim.solution, 1)
     )
-    return Latex(f"${symbolic_product(sym.w, exponents)}$"), powers
+    return Latex(f"${symbolic_product(sym.w, exponents, f'{sym.f}_i')}$"), powers
 
 
 def _digest(digest: str) -> Latex:

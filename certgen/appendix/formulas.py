@@ -20,12 +20,14 @@ from certgen.polynomial import Polynomial, write_integer, write_polynomial
 
 __all__ = [
     "DIGITS_PER_CELL",
+    "EXPONENT_DIGITS",
     "FACTORS_LIMIT",
     "LINE",
     "TERMS_LIMIT",
     "TEXT_LIMIT",
     "WRITTEN_LINES",
     "Printer",
+    "is_long_exponent",
     "is_omitted",
     "join_numbers",
     "lines_of",
@@ -50,6 +52,9 @@ WRITTEN_LINES = 12
 
 LINE = 60
 """Characters of strict notation that make about one display line."""
+
+EXPONENT_DIGITS = 20
+"""An exponent with more digits cannot stand as one: TeX breaks no superscript."""
 
 DIGITS_PER_CELL = 12
 """Numbers of spot checks stand in a table when they fit a pocket calculator."""
@@ -90,6 +95,8 @@ class Printer:
         text = sum(len(write_polynomial(power.base)) for power in powers)
         if text > 5 * LINE or any(is_omitted(power.base) for power in powers):
             return None
+        if any(is_long_exponent(power.exponent) for power in powers):
+            return None
         return Latex(f"${power_product(tuple(powers), self.letter)}$")
 
     def _omitted(self, value: Polynomial) -> Latex:
@@ -128,14 +135,24 @@ def join_numbers(values: Sequence[int]) -> Latex:
     return Latex(", ".join(texts[:-1]) + " and " + texts[-1])
 
 
-def symbolic_product(symbol: str, exponents: Sequence[Fraction]) -> Latex:
-    """Return symbol_1^e_1 symbol_2^e_2 ..., without a factor where e is 0."""
+def is_long_exponent(value: Fraction) -> bool:
+    """Whether `value` is too long for a superscript."""
+    return len(_inline(value)) > EXPONENT_DIGITS
+
+
+def symbolic_product(symbol: str, exponents: Sequence[Fraction], name: str) -> Latex:
+    """Return symbol_1^e_1 symbol_2^e_2 ..., without a factor where e is 0.
+
+    A long exponent is called by its `name`, with the index for `_i` in it.
+    """
     one = len(exponents) == 1
     pieces = []
     for k, exponent in enumerate(exponents, 1):
         if exponent:
             subscript = "" if one else f"_{{{k}}}"
-            power = "" if exponent == 1 else f"^{{{_inline(exponent)}}}"
+            long = is_long_exponent(exponent)
+            text = name.replace("_i", subscript) if long else _inline(exponent)
+            power = "" if exponent == 1 else f"^{{{text}}}"
             pieces.append(f"{symbol}{subscript}{power}")
     return Latex(r"\,\certgenbreak ".join(pieces) or "1")
 
