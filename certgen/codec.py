@@ -12,8 +12,7 @@ from __future__ import annotations
 import hashlib
 import json
 import re
-from collections.abc import Callable, Iterator
-from contextlib import contextmanager
+from collections.abc import Callable
 from dataclasses import dataclass
 from typing import Any, get_args
 
@@ -47,15 +46,7 @@ from certgen.claim import (
     Power,
     Subject,
 )
-from certgen.errors import (
-    ClaimError,
-    InvariantError,
-    LimitError,
-    MalformedError,
-    RejectedError,
-    UnsupportedVersionError,
-    shorten,
-)
+from certgen.errors import MalformedError, UnsupportedVersionError, shorten
 from certgen.polynomial import (
     read_integer,
     read_polynomial,
@@ -63,6 +54,14 @@ from certgen.polynomial import (
     write_integer,
     write_polynomial,
     write_rational,
+)
+from certgen.strict_json import (
+    BYTES_LIMIT,
+    NESTING_LIMIT,
+    JsonValue,
+    canonical,
+    read_json,
+    read_text,
 )
 
 __all__ = [
@@ -75,8 +74,6 @@ __all__ = [
 ]
 
 FORMAT = "certgen/1"
-BYTES_LIMIT = 64 * 1024 * 1024
-NESTING_LIMIT = 16
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class StoredCertificate:
@@ -88,143 +85,6 @@ class StoredCertificate:
 
 
 # --------------------------------------------------------------------------
-# bytes -> text -> JSON
-
-
-def _read_text(data: bytes | str) -> str:
-    if len(data) > BYTES_LIMIT:
-        raise LimitError(f"a text of {len(data)} bytes; the limit is {BYTES_LIMIT}")
-    if not data:
-        raise MalformedError("the file is empty")
-    try:
-        if isinstance(data, bytes):
-            return data.decode("ascii")
-        data.encode("ascii")
-    except UnicodeError as error:
-        place = getattr(error, "start", 0)
-        raise MalformedError(f"byte {place + 1} is not ASCII") from None
-    return data
-
-
-# a string that does not end is one token too: the scan stays linear
-# (and possessive: it needs no memory)
-_TOKEN = re.compile(r'"(?:[^"\\]++|\\.)*+"?|[\[{]|[\]}]')
-
-
-def _check_nesting(text: str) -> None:
-    depth = 0
-    for match in _TOKEN.finditer(text):
-        token = match[0][0]
-        if token in "[{":
-            depth += 1
-        elif token in "]}":
-            depth -= 1
-        if depth > NESTING_LIMIT:
-            raise LimitError(f"nesting deeper than the limit of {NESTING_LIMIT}")
-
-
-class _Number:
-    """A JSON number, NaN or Infinity: kept until its path is known, then refused."""
-
-    def __init__(self, literal: str) -> None:
-        self.literal = literal
-
-
-def _unique(pairs: list[tuple[str, Any]]) -> dict[str, Any]:
-    out: dict[str, Any] = {}
-    for key, value in pairs:
-        if key in out:
-            raise MalformedError(f"the key '{shorten(key)}' stands twice")
-        out[key] = value
-    return out
-
-
-def _read_json(text: str) -> Any:
-    _check_nesting(text)
-    try:
-        return json.loads(
-            text,
-            object_pairs_hook=_unique,
-            parse_int=_Number,
-            parse_float=_Number,
-            parse_constant=_Number,
-        )
-    except json.JSONDecodeError as error:
-        raise MalformedError(
-            f"not JSON: {error.msg} at line {error.lineno}, column {error.colno}"
-        ) from None
-    except RecursionError:
-        raise LimitError(f"nesting deeper than the limit of {NESTING_LIMIT}") from None
-
-
-# --------------------------------------------------------------------------
-# JSON with its path
-
-
-class _Reader:
-    """A value of the parsed JSON together with its path."""
-
-    def __init__(self, value: Any, path: str) -> None:
-        self.value = value
-        self.path = path
-
-    def fail(self, expected: str) -> MalformedError:
-        names = {dict: "an object", list: "a list", str: "a string", bool: "a boolean"}
-        found = names.get(type(self.value), "null")
-        if isinstance(self.value, _Number):
-            found = f"the bare number {shorten(self.value.literal, 30)}"
-        return MalformedError(f"expected {expected}, found {found}", path=self.path)
-
-    def keys(self, *names: str) -> None:
-        if not isinstance(self.value, dict):
-            raise self.fail("an object")
-        for key in self.value:
-            if key not in names:
-                raise MalformedError(f"unknown key '{shorten(key)}'", path=self.path)
-        for name in names:
-            if name not in self.value:
-                raise MalformedError(f"the key '{name}' is missing", path=self.path)
-
-    def child(self, name: str) -> _Reader:
-        return _Reader(self.value[name], f"{self.path}.{name}")
-
-    def peek(self, name: str) -> str:
-        """The string at a key that decides how the rest is read."""
-        if not isinstance(self.value, dict):
-            raise self.fail("an object")
-        if name not in self.value:
-            raise MalformedError(f"the key '{name}' is missing", path=self.path)
-        return self.child(name).text()
-
-    def without(self, *names: str) -> _Reader:
-        rest = {k: v for k, v in self.value.items() if k not in names}
-        return _Reader(rest, self.path)
-
-    def items(self) -> Iterator[_Reader]:
-        if not isinstance(self.value, list):
-            raise self.fail("a list")
-        for i, item in enumerate(self.value):
-            yield _Reader(item, f"{self.path}[{i}]")
-
-    def text(self) -> str:
-        if not isinstance(self.value, str):
-            raise self.fail("a string")
-        return self.value
-
-    @contextmanager
-    def building(self) -> Iterator[None]:
-        """Turn the errors of constructors into errors at this path."""
-        try:
-            yield
-        except InvariantError as error:
-            raise RejectedError(
-                error.code, self.path, str(error), "another value"
-            ) from None
-        except ClaimError as error:
-            raise MalformedError(str(error), path=self.path) from None
-
-
-# --------------------------------------------------------------------------
 # shapes: one description serves reading and writing
 
 
@@ -232,11 +92,11 @@ class _Reader:
 class _Shape:
     """How one kind of value is read from JSON and written to it."""
 
-    read: Callable[[_Reader], Any]
+    read: Callable[[JsonValue], Any]
     write: Callable[[Any], Any]
 
 
-_TEXT = _Shape(_Reader.text, str)
+_TEXT = _Shape(JsonValue.text, str)
 _INTEGER = _Shape(lambda r: read_integer(r.text(), path=r.path), write_integer)
 _RATIONAL = _Shape(lambda r: read_rational(r.text(), path=r.path), write_rational)
 _POLYNOMIAL = _Shape(lambda r: read_polynomial(r.text(), path=r.path), write_polynomial)
@@ -245,7 +105,7 @@ _POLYNOMIAL = _Shape(lambda r: read_polynomial(r.text(), path=r.path), write_pol
 def _word(allowed: Any) -> _Shape:
     words = get_args(allowed)
 
-    def read(reader: _Reader) -> str:
+    def read(reader: JsonValue) -> str:
         word = reader.text()
         if word not in words:
             raise MalformedError(
@@ -273,7 +133,7 @@ def _list(shape: _Shape) -> _Shape:
 def _record(cls: Any, **fields: _Shape) -> _Shape:
     """An object whose keys are exactly the fields of the dataclass `cls`."""
 
-    def read(reader: _Reader) -> Any:
+    def read(reader: JsonValue) -> Any:
         reader.keys(*fields)
         with reader.building():
             return cls(**{k: shape.read(reader.child(k)) for k, shape in fields.items()})
@@ -288,7 +148,7 @@ def _tagged(what: str, shapes: dict[Any, _Shape]) -> _Shape:
     """An object whose `kind` names one of these dataclasses; the rest is its record."""
     by_kind = {cls.KIND: shape for cls, shape in shapes.items()}
 
-    def read(reader: _Reader) -> Any:
+    def read(reader: JsonValue) -> Any:
         kind = reader.peek("kind")
         if kind not in by_kind:
             raise UnsupportedVersionError(
@@ -306,7 +166,7 @@ def _tagged(what: str, shapes: dict[Any, _Shape]) -> _Shape:
 _EQUATION_TEXT = re.compile(r"\((?P<b>[^()]*)\)\*y' = \((?P<a>[^()]*)\)\*y")
 
 
-def _read_equation(reader: _Reader) -> FirstOrderEquation:
+def _read_equation(reader: JsonValue) -> FirstOrderEquation:
     match = _EQUATION_TEXT.fullmatch(reader.text())
     if match is None:
         raise MalformedError("expected an equation (b)*y' = (a)*y", path=reader.path)
@@ -317,7 +177,7 @@ def _read_equation(reader: _Reader) -> FirstOrderEquation:
         )
 
 
-def _read_counter_prime(reader: _Reader) -> CounterPrime:
+def _read_counter_prime(reader: JsonValue) -> CounterPrime:
     """The prime and its witness stand in one object."""
     reader.peek("p")
     with reader.building():
@@ -435,11 +295,7 @@ _CERTIFICATE = _record(Certificate, claim=_CLAIM, verdict=_word(Verdict), proof=
 def write_certificate(certificate: Certificate) -> str:
     """Return the canonical text of a certificate, digest included."""
     obj = {"format": FORMAT, **_CERTIFICATE.write(certificate)}
-    return _canonical({**obj, "digest": _digest(obj)})
-
-
-def _canonical(obj: object) -> str:
-    return json.dumps(obj, sort_keys=True, ensure_ascii=True, indent=1) + "\n"
+    return canonical({**obj, "digest": _digest(obj)})
 
 
 def _digest(obj: dict[str, Any]) -> str:
@@ -455,9 +311,9 @@ def read_certificate(data: bytes | str) -> StoredCertificate:
     for an unknown format, claim kind or proof kind, and RejectedError (codes
     "vacuous" and "not-canonical") for a value that its type does not admit.
     """
-    text = _read_text(data)
-    obj = _read_json(text)
-    root = _Reader(obj, "$")
+    text = read_text(data)
+    obj = read_json(text)
+    root = JsonValue(obj, "$")
     found = root.peek("format")
     if found != FORMAT:
         raise UnsupportedVersionError(
@@ -467,7 +323,7 @@ def read_certificate(data: bytes | str) -> StoredCertificate:
     if not re.fullmatch(r"[0-9a-f]{64}", stored):
         raise MalformedError("expected 64 lower-case hex digits", path="$.digest")
     certificate = _CERTIFICATE.read(root.without("format", "digest"))
-    if _canonical(obj) != text:
+    if canonical(obj) != text:
         raise MalformedError(
             "the text is not canonical: expected sorted keys, an indent of one "
             "space, ASCII with \\u escapes and one final newline"

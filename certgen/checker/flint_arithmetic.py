@@ -3,15 +3,15 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from typing import Any
+from typing import Any, Self
 
 from flint import fmpz_poly, nmod_poly
 
 __all__ = ["ARITHMETIC"]
 
 
-class _ZPoly:
-    """See arithmetic.ZPoly."""
+class _Polynomial:
+    """What both kinds of polynomials share; `_f` is FLINT's."""
 
     __slots__ = ("_f",)
 
@@ -25,28 +25,34 @@ class _ZPoly:
     def coefficients(self) -> list[int]:
         return [int(c) for c in self._f.coeffs()]
 
-    def leading(self) -> int:
-        return int(self._f.leading_coefficient()) if self._f else 0
-
     def __eq__(self, other: object) -> bool:
-        return isinstance(other, _ZPoly) and bool(self._f == other._f)
+        return isinstance(other, type(self)) and bool(self._f == other._f)
 
     __hash__ = None  # type: ignore[assignment]
 
-    def __add__(self, other: _ZPoly) -> _ZPoly:
-        return _ZPoly(self._f + other._f)
+    def __add__(self, other: Self) -> Self:
+        return type(self)(self._f + other._f)
 
-    def __sub__(self, other: _ZPoly) -> _ZPoly:
-        return _ZPoly(self._f - other._f)
+    def __sub__(self, other: Self) -> Self:
+        return type(self)(self._f - other._f)
 
-    def __mul__(self, other: _ZPoly) -> _ZPoly:
-        return _ZPoly(self._f * other._f)
+    def __mul__(self, other: Self) -> Self:
+        return type(self)(self._f * other._f)
+
+    def derivative(self) -> Self:
+        return type(self)(self._f.derivative())
+
+
+class _ZPoly(_Polynomial):
+    """See arithmetic.ZPoly."""
+
+    __slots__ = ()
+
+    def leading(self) -> int:
+        return int(self._f.leading_coefficient()) if self._f else 0
 
     def times(self, factor: int) -> _ZPoly:
         return _ZPoly(self._f * factor)
-
-    def derivative(self) -> _ZPoly:
-        return _ZPoly(self._f.derivative())
 
     def value(self, x: int) -> int:
         return int(self._f(x))
@@ -62,34 +68,10 @@ class _ZPoly:
         return _ModPoly(nmod_poly(self._f, p))
 
 
-class _ModPoly:
+class _ModPoly(_Polynomial):
     """See arithmetic.ModPoly."""
 
-    __slots__ = ("_f",)
-
-    def __init__(self, f: Any) -> None:
-        self._f = f
-
-    @property
-    def degree(self) -> int:
-        return int(self._f.degree())
-
-    def coefficients(self) -> list[int]:
-        return [int(c) for c in self._f.coeffs()]
-
-    def __eq__(self, other: object) -> bool:
-        return isinstance(other, _ModPoly) and bool(self._f == other._f)
-
-    __hash__ = None  # type: ignore[assignment]
-
-    def __add__(self, other: _ModPoly) -> _ModPoly:
-        return _ModPoly(self._f + other._f)
-
-    def __sub__(self, other: _ModPoly) -> _ModPoly:
-        return _ModPoly(self._f - other._f)
-
-    def __mul__(self, other: _ModPoly) -> _ModPoly:
-        return _ModPoly(self._f * other._f)
+    __slots__ = ()
 
     def quotient(self, divisor: _ModPoly) -> _ModPoly:
         return _ModPoly(self._f // divisor._f)
@@ -99,9 +81,6 @@ class _ModPoly:
 
     def gcd(self, other: _ModPoly) -> _ModPoly:
         return _ModPoly(self._f.gcd(other._f))
-
-    def derivative(self) -> _ModPoly:
-        return _ModPoly(self._f.derivative())
 
     def power(self, exponent: int, modulus: _ModPoly | None = None) -> _ModPoly:
         if modulus is None:
