@@ -10,7 +10,7 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-import certgen.codec
+import certgen.strict_json
 from certgen.codec import NESTING_LIMIT, read_certificate, write_certificate
 from certgen.errors import (
     CertgenError,
@@ -81,7 +81,7 @@ def test_limits_of_the_text(monkeypatch: pytest.MonkeyPatch) -> None:
     with pytest.raises(MalformedError):
         read_certificate("[" * NESTING_LIMIT + "]" * NESTING_LIMIT)
     text = stored(handmade("ferry"))
-    monkeypatch.setattr(certgen.codec, "BYTES_LIMIT", len(text) - 1)
+    monkeypatch.setattr(certgen.strict_json, "BYTES_LIMIT", len(text) - 1)
     with pytest.raises(LimitError, match="bytes"):
         read_certificate(text)
 

@@ -15,8 +15,8 @@ from pathlib import Path
 
 import pytest
 
-from certgen.api import certify
-from certgen.appendix import typeset
+from certgen.api import certify, load
+from certgen.appendix import typeset, typeset_many
 from certgen.appendix.environment import render
 from certgen.checker import CheckedCertificate
 from certgen.claim import Letters, Power
@@ -274,6 +274,25 @@ def test_long_appendices_arrive_and_no_box_complains(
         assert find_terms(text, claim.equation.denominator, "x") is None, claim.id
         for power in getattr(proof, "solution", ()):
             assert find_terms(text, power.base, "x") is None, claim.id
+
+
+@pytest.fixture(scope="module")
+def samples() -> str:
+    files = sorted((Path(__file__).parent.parent / "samples/certificates").glob("*.json"))
+    checked = [load(path).checked for path in files]
+    assert len(checked) >= 12
+    return "\n".join([*map(typeset, checked), typeset_many(checked)])
+
+
+@pytest.mark.needs_pdflatex
+@DOCUMENTS
+def test_no_box_of_the_samples_complains(
+    document_class: str, hyperref: bool, samples: str, tmp_path: Path
+) -> None:
+    """All sample appendices, one by one and as one appendix with a table."""
+    source = tmp_path / "paper.tex"
+    source.write_text(paper(document_class, samples, hyperref=hyperref), encoding="ascii")
+    assert complaints(run_pdflatex(source)) == []
 
 
 def test_beyond_the_limit_the_appendix_says_where_the_data_are(
