@@ -17,7 +17,7 @@ from certgen.appendix.document import build_pdf, standalone
 from certgen.appendix.environment import render
 from certgen.appendix.readback import printed_formulas
 from certgen.appendix.refutation import build_refutation
-from certgen.appendix.summary import build_summary, latex_summary, summary_width
+from certgen.appendix.summary import build_summary, latex_summary
 from certgen.certificate import AlgebraicSolution, ClosedFormDisagrees
 from certgen.checker import CheckedCertificate
 from certgen.errors import ClaimError
@@ -55,11 +55,7 @@ def typeset_many(checked: Sequence[CheckedCertificate]) -> str:
     ids = [item.certificate.claim.id for item in checked]
     if not ids or len(ids) != len(set(ids)):
         raise ClaimError("an appendix needs certificates with different ids, at least one")
-    table = render(
-        "many.tex.j2",
-        rows=[build_summary(item) for item in checked],
-        width=summary_width(checked),
-    )
+    table = render("many.tex.j2", summary=build_summary(checked))
     return _finish("several certificates", [table, *bodies])
 
 
@@ -91,7 +87,7 @@ def _algebraic(checked: CheckedCertificate) -> str:
         "algebraic_solution.tex.j2",
         head=head, sym=head.sym, steps=steps,
         show_claimed=head.claimed is not None,
-        cited=_cited_by_steps(steps.eisenstein_point is not None and not steps.zero),
+        cited=_cited_by_steps(steps.integrality is not None and not steps.zero),
     )  # fmt: skip
 
 
@@ -100,15 +96,15 @@ def _closed_form(checked: CheckedCertificate) -> str:
     return render(
         "closed_form_disagrees.tex.j2",
         head=head, sym=head.sym, steps=steps, form=form, show_claimed=False,
-        cited=_cited_by_steps(steps.eisenstein_point is not None and not steps.zero),
+        cited=_cited_by_steps(steps.integrality is not None and not steps.zero),
     )  # fmt: skip
 
 
 def _refutation(checked: CheckedCertificate) -> str:
     head, refutation = build_refutation(checked)
-    cited: tuple[str, ...] = ("cartier", "honda", "katz")
+    cited: tuple[str, ...] = ("cartier", "honda", "katz", "katz-conjecture")
     if not refutation.density.almost_all:
-        cited += ("chebotarev", "kronecker", "rothstein")
+        cited = ("cartier", "chebotarev", "honda", "katz", "katz-conjecture", "kronecker")
     return render(
         "no_algebraic_solution.tex.j2",
         head=head, sym=head.sym, no=refutation, cp=refutation.counter_prime,
@@ -117,4 +113,4 @@ def _refutation(checked: CheckedCertificate) -> str:
 
 
 def _cited_by_steps(has_eisenstein: bool) -> tuple[str, ...]:
-    return ("eisenstein",) if has_eisenstein else ()
+    return ("eisenstein", "heine") if has_eisenstein else ()

@@ -6,36 +6,35 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from fractions import Fraction
 
+from certgen.appendix.bezout import BezoutShown, build_bezout
 from certgen.appendix.common import Head, build_head, printer_of
 from certgen.appendix.formulas import (
-    DIGITS_PER_CELL,
     FACTORS_LIMIT,
     LINE,
-    WRITTEN_LINES,
     Printer,
     is_long_exponent,
-    is_omitted,
-    lines_of,
-    signed_factor,
-    signed_sum,
+    listing,
+    show,
     symbolic_product,
 )
-from certgen.appendix.strip import StripItem, build_strip
+from certgen.appendix.identity import Spot, Written, build_spot, build_written, is_by_hand
+from certgen.appendix.integrality import Integrality, build_integrality
+from certgen.appendix.residues import Residues, build_residues
+from certgen.appendix.strip import Strip, build_strip
 from certgen.appendix.symbols import Symbols
-from certgen.certificate import AlgebraicSolution, PartialFraction
+from certgen.appendix.values import derivative, fits, value_at
+from certgen.certificate import AlgebraicSolution
 from certgen.checker import CheckedCertificate
-from certgen.checker.facts import AlgebraicFacts, IdentitySpot
-from certgen.claim import Power
+from certgen.checker.facts import AlgebraicFacts
+from certgen.claim import FirstOrderClaim, Power
 from certgen.errors import DefectError
 from certgen.notation.latex_writer import Latex, integer
-from certgen.polynomial import Polynomial, write_integer, write_polynomial
+from certgen.polynomial import Polynomial, write_polynomial
 
-__all__ = ["Algebraic", "Base", "Factor", "Spot", "Written", "build_algebraic",
-           "build_algebraic_parts", "coefficient"]
+__all__ = ["Algebraic", "Base", "build_algebraic", "build_algebraic_parts"]
 
-BY_HAND_DEGREE = 8
-BY_HAND_BASES = 4
-BY_HAND_DIGITS = 6
+NUMERATORS_LISTED = 6
+CLAIMED_TERMS = 4
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -45,41 +44,17 @@ class Base:
     index: Latex
     polynomial: Latex
     exponent: Latex
+    show: Latex
+    is_long: bool
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
-class Factor:
-    """A displayed factor f of b with residue top/bottom: bottom*a = top*b' mod f."""
-
-    index: Latex
-    polynomial: Latex
-    residue: Latex
-    top: Latex
-    bottom: Latex
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Written:
-    """The two sides of the second identity, term by term."""
-
-    products: tuple[Latex, ...]
-    derivatives: tuple[Latex, ...]
-    identity: Latex
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Spot:
-    """The identities at one point; `rows` are v_i, v_i', term; unevaluated sums."""
+class ClaimedSpot:
+    """The logarithmic derivative of the claimed product at one point, and a/b there."""
 
     point: Latex
-    a: Latex
-    b: Latex
-    product: Latex
-    sum: Latex
-    tabular: bool
-    rows: tuple[tuple[Latex, ...], ...]
-    width: Latex
-    term_width: Latex
+    terms: Latex
+    total: Latex
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -90,14 +65,13 @@ class Algebraic:
     rational: bool
     one_base: bool
     degree: Latex
-    degree_as_exponent: Latex
+    degree_power: Latex
     beta: Latex
     beta_is_one: bool
-    weight_is_one: bool
+    numerators: Latex | None
     count: Latex
     bases: tuple[Base, ...]
-    factor_count: Latex
-    factors: tuple[Factor, ...]
+    residues: Residues
     factors_are_bases: bool
     residues_by_hand: bool
     written: Written | None
@@ -112,12 +86,11 @@ class Algebraic:
     linear: bool
     squarefree_how: str
     squarefree_prime: Latex
-    eisenstein_point: Latex | None
-    eisenstein_constant: Latex
-    shift: Latex
-    base_name: Latex
+    squarefree: BezoutShown | None
+    integrality: Integrality | None
     claimed_is_solution: bool
-    strip: tuple[StripItem, ...]
+    claimed_spot: ClaimedSpot | None
+    strip: Strip
 
 
 def build_algebraic(checked: CheckedCertificate) -> tuple[Head, Algebraic]:
@@ -138,33 +111,33 @@ def build_algebraic_parts(
     exponents = [power.exponent for power in proof.solution]
     top = _integer_powers(proof.solution, proof.minimal_polynomial.numerator)
     bottom = _integer_powers(proof.solution, proof.minimal_polynomial.denominator)
-    written = _written(printer, facts)
     linear = len(proof.partial_fractions) <= FACTORS_LIMIT and all(
         term.factor.degree == 1 for term in proof.partial_fractions
     )
     symbolic = Latex(f"${_symbolic(sym, exponents, f'{sym.rho}_i')}$")
+    squarefree = _squarefree(printer, sym, claim, facts)
+    written = build_written(printer, facts)
     return Algebraic(
         zero=not proof.solution,
         rational=proof.degree == 1,
         one_base=len(proof.solution) == 1,
         degree=integer(facts.degree),
-        degree_as_exponent=sym.N if is_long_exponent(Fraction(facts.degree))
+        degree_power=sym.N if is_long_exponent(Fraction(facts.degree))
         else integer(facts.degree),
         beta=integer(facts.beta),
         beta_is_one=facts.beta == 1,
-        weight_is_one=facts.numerators == (1,),
+        numerators=_numerators(sym, facts),
         count=integer(len(proof.solution)),
         bases=_bases(printer, proof.solution),
-        factor_count=integer(len(proof.partial_fractions)),
-        factors=_factors(printer, proof),
+        residues=build_residues(printer, equation, proof, facts),
         factors_are_bases=[t.factor for t in proof.partial_fractions]
         == [power.base for power in proof.solution],
         residues_by_hand=all(
             len(write_polynomial(q)) <= LINE for q in (equation.numerator, equation.denominator)
         ),
         written=written,
-        by_hand=written is not None and _is_by_hand(facts),
-        spot=_spot(facts),
+        by_hand=written is not None and is_by_hand(facts),
+        spot=build_spot(printer, facts),
         solution=printer.product(proof.solution) or symbolic,
         numerator=printer.product(proof.minimal_polynomial.numerator)
         or Latex(f"${_symbolic(sym, top, f'{sym.n}_i', f'_{{{sym.n}_i>0}}')}$"),
@@ -174,21 +147,25 @@ def build_algebraic_parts(
         has_denominator=any(bottom),
         one_root=facts.squarefree_degree <= 1,
         linear=linear,
-        squarefree_how="by sight" if linear else "by machine",
+        squarefree_how="by sight" if linear
+        else squarefree.how if squarefree is not None else "by machine",
         squarefree_prime=integer(proof.squarefree_prime),
-        eisenstein_point=integer(proof.eisenstein.point) if proof.eisenstein else None,
-        eisenstein_constant=integer(proof.eisenstein.constant if proof.eisenstein else 1),
-        shift=_shift(proof),
-        base_name=Latex(sym.v if len(proof.solution) == 1 else f"{sym.v}_{sym.i}"),
+        squarefree=squarefree,
+        integrality=build_integrality(printer, sym, proof),
         claimed_is_solution=claim.solution == proof.solution,
+        claimed_spot=_claimed_spot(claim, facts),
         strip=build_strip(facts.strip),
     )
 
 
-def _shift(proof: AlgebraicSolution) -> Latex:
-    """`x0 +` as it stands before L*t; nothing at the origin."""
-    point = proof.eisenstein.point if proof.eisenstein else 0
-    return Latex(f"{integer(point)} +" if point else "")
+def _numerators(sym: Symbols, facts: AlgebraicFacts) -> Latex | None:
+    """`n_1 = 3` and so on, when they are few and short."""
+    values = facts.numerators
+    if len(values) > NUMERATORS_LISTED or not fits(*values):
+        return None
+    if len(values) == 1:
+        return Latex(f"${sym.n} = {integer(values[0])}$")
+    return listing([f"${sym.n}_{{{k}}} = {integer(n)}$" for k, n in enumerate(values, 1)])
 
 
 def _symbolic(
@@ -206,107 +183,69 @@ def _integer_powers(bases: Sequence[Power], side: Sequence[Power]) -> list[Fract
     return [exponent.get(power.base, Fraction(0)) for power in bases]
 
 
-def _listed(values: Sequence[Polynomial]) -> bool:
-    return len(values) <= FACTORS_LIMIT
-
-
 def _bases(printer: Printer, solution: Sequence[Power]) -> tuple[Base, ...]:
-    if not _listed([power.base for power in solution]):
+    if len(solution) > FACTORS_LIMIT:
         return ()
     return tuple(
         Base(
             index=integer(k),
             polynomial=printer.polynomial(f"base-{k}", power.base),
-            exponent=printer.number(f"exponent-{k}", power.exponent),
+            exponent=printer.value(f"exponent-{k}", power.exponent),
+            show=show(power.base),
+            is_long=is_long_exponent(power.exponent),
         )
         for k, power in enumerate(solution, 1)
     )
 
 
-def _factors(printer: Printer, proof: AlgebraicSolution) -> tuple[Factor, ...]:
-    terms: tuple[PartialFraction, ...] = proof.partial_fractions
-    if not _listed([term.factor for term in terms]):
-        return ()
-    return tuple(
-        Factor(
-            index=integer(k),
-            polynomial=printer.polynomial(f"factor-{k}", term.factor),
-            residue=printer.number(f"residue-{k}", term.residue),
-            top=coefficient(term.residue.numerator),
-            bottom=coefficient(term.residue.denominator),
-        )
-        for k, term in enumerate(terms, 1)
-    )
-
-
-def coefficient(value: int) -> Latex:
-    """An integer as the coefficient before a letter: 1 is not written."""
-    if value in (1, -1):
-        return Latex("-" if value < 0 else "")
-    return Latex(rf"{integer(value)}\,")
-
-
-def _written(printer: Printer, facts: AlgebraicFacts) -> Written | None:
-    """Both sides of the identity when they take at most WRITTEN_LINES lines."""
-    if facts.products is None or facts.identity is None:
+def _squarefree(
+    printer: Printer, sym: Symbols, claim: FirstOrderClaim, facts: AlgebraicFacts
+) -> BezoutShown | None:
+    """The Bezout line of V and V'; V is b/beta."""
+    b, slope = claim.equation.denominator, facts.b_derivative
+    if facts.bezout is None or slope is None:
         return None
-    printed = (*facts.products, *facts.derivatives, facts.identity)
-    if lines_of(printed) > 2 * WRITTEN_LINES or any(map(is_omitted, printed)):
-        return None
-    if lines_of((*facts.products, facts.identity)) > WRITTEN_LINES:
-        return None
-    return Written(
-        products=_numbered(printer, "product", facts.products),
-        derivatives=_numbered(printer, "derivative", facts.derivatives),
-        identity=printer.polynomial("identity", facts.identity),
+    name = sym.v if len(facts.numerators) == 1 else sym.V
+    factors = (
+        Polynomial.from_coefficients(c / facts.beta for c in b.coefficients),
+        Polynomial.from_coefficients(c / facts.beta for c in slope.coefficients),
     )
+    return build_bezout(printer, "squarefree", facts.bezout, (name, f"{name}'"), factors)
 
 
-def _numbered(
-    printer: Printer, name: str, values: Sequence[Polynomial]
-) -> tuple[Latex, ...]:
-    return tuple(
-        printer.polynomial(f"{name}-{k}", value) for k, value in enumerate(values, 1)
-    )
-
-
-def _is_by_hand(facts: AlgebraicFacts) -> bool:
-    products = facts.products or ()
-    digits = max(
-        (len(write_integer(abs(c))) for q in products for c in q.numerators), default=0
-    )
-    return (
-        facts.squarefree_degree <= BY_HAND_DEGREE
-        and len(products) <= BY_HAND_BASES
-        and digits <= BY_HAND_DIGITS
-    )
-
-
-def _spot(facts: AlgebraicFacts) -> Spot | None:
-    spot = facts.spot
-    if spot is None:
+def _claimed_spot(claim: FirstOrderClaim, facts: AlgebraicFacts) -> ClaimedSpot | None:
+    """sum of exponent*w'/w at the checker's point, against a/b there."""
+    powers, spot = claim.solution or (), facts.spot
+    if spot is None or not 1 <= len(powers) <= CLAIMED_TERMS:
         return None
-    rows = list(zip(spot.bases, spot.derivatives, spot.terms, strict=True))
-    digits = _digits(spot)
-    if len(rows) > FACTORS_LIMIT or digits * 3 * len(rows) > 2 * WRITTEN_LINES * LINE:
+    terms = []
+    for power in powers:
+        value = value_at(power.base, spot.point)
+        if value == 0:
+            return None
+        slope = value_at(derivative(power.base), spot.point)
+        terms.append((power.exponent, slope, value))
+    total = Fraction(spot.a, spot.b)
+    if not fits(total, *(number for term in terms for number in term)):
         return None
-    beta = "" if facts.beta == 1 and len(rows) > 1 else rf"{integer(facts.beta)}\cdot "
-    total = signed_sum(spot.terms)
-    return Spot(
+    if sum(e * slope / value for e, slope, value in terms) != total:
+        return None
+    return ClaimedSpot(
         point=integer(spot.point),
-        a=signed_factor(spot.a),
-        b=integer(spot.b),
-        product=Latex(
-            beta + r"\certgenbreak\cdot ".join(signed_factor(v) for v in spot.bases)
-        ),
-        sum=Latex(f"{beta}({total})" if beta and len(rows) > 1 else f"{beta}{total}"),
-        tabular=digits <= DIGITS_PER_CELL // 2 and len(rows) > 1,
-        rows=tuple(tuple(integer(v) for v in row) for row in rows),
-        width=Latex(f"{max(2.5, 0.52 * digits + 1):.2f}em"),
-        term_width=Latex(f"{max(7.5, 0.52 * digits + 1):.2f}em"),
-    )
+        terms=Latex(r" \certgenbreak + ".join(_quotient(*term) for term in terms)),
+        total=Latex(rf"{integer(spot.a)}/{integer(spot.b)}"
+                    if spot.b > 0 else rf"{integer(-spot.a)}/{integer(-spot.b)}"),
+    )  # fmt: skip
 
 
-def _digits(spot: IdentitySpot) -> int:
-    values = (*spot.bases, *spot.derivatives, *spot.terms)
-    return max(len(write_integer(value)) for value in values)
+def _quotient(exponent: Fraction, slope: Fraction, value: Fraction) -> str:
+    factor = f"{integer(exponent.numerator)}"
+    if exponent.denominator != 1:
+        factor = rf"\tfrac{{{factor}}}{{{integer(exponent.denominator)}}}"
+    if exponent < 0:
+        factor = f"({factor})"
+    ratio = slope / value
+    text = f"{integer(ratio.numerator)}"
+    if ratio.denominator != 1:
+        text = rf"\tfrac{{{integer(slope.numerator)}}}{{{integer(value.numerator)}}}"
+    return rf"{factor}\cdot {text if ratio >= 0 else f'({text})'}"

@@ -15,19 +15,19 @@ from certgen.appendix.symbols import Symbols, choose_symbols
 from certgen.checker import CheckedCertificate
 from certgen.claim import FirstOrderClaim
 from certgen.notation import read_equation
-from certgen.notation.latex_writer import Latex, equation, fraction, rational
-from certgen.polynomial import Polynomial, write_polynomial
+from certgen.notation.latex_writer import Latex, equation, escape, rational
+from certgen.polynomial import write_polynomial
 
 __all__ = ["ClaimedPower", "Head", "build_head", "printer_of"]
 
 AS_WRITTEN_PRINTED = 600
 """The author's text of the equation is repeated up to this many characters."""
 
-EQUATION_PRINTED = 600
-"""A longer equation is stated with a and b, which are printed as data."""
+EQUATION_PRINTED = 60
+"""A longer equation is stated as b*y' = a*y, with a and b displayed once."""
 
-FRACTION_PRINTED = 36
-"""r = a/b is shown as one fraction when both sides are at most this long."""
+UNBROKEN_NAME = 24
+"""A file name up to this many characters stays on one line."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -54,7 +54,6 @@ class Head:
     zero: bool
     equation: Latex
     is_long: bool
-    as_fraction: Latex | None
     as_written: Latex | None
     as_read: Latex | None
     a: Latex
@@ -92,7 +91,6 @@ def build_head(checked: CheckedCertificate) -> Head:
         zero=claim.equation.numerator.is_zero,
         equation=_equation(claim, sym),
         is_long=_is_long(claim),
-        as_fraction=_as_fraction(claim),
         as_written=_as_written(claim.as_written),
         as_read=_as_read(claim),
         a=printer.polynomial("a", claim.equation.numerator),
@@ -100,16 +98,19 @@ def build_head(checked: CheckedCertificate) -> Head:
         claimed=claimed,
         claimed_powers=powers,
         claimed_as_written=_as_written(claim.solution_as_written),
-        file=typewriter(name),
-        command=typewriter(f"certgen check {name}"),
-        module_command=typewriter(f"python -m certgen.checker {name}"),
+        file=_command("", name),
+        command=_command("certgen check ", name),
+        module_command=_command("python -m certgen.checker ", name),
         digest=_digest(checked.digest),
         sym=sym,
     )
 
 
-def _short(value: Polynomial) -> bool:
-    return len(write_polynomial(value)) <= FRACTION_PRINTED
+def _command(words: str, name: str) -> Latex:
+    """A command in typewriter type; the name of the file is broken only when long."""
+    if len(name) > UNBROKEN_NAME:
+        return typewriter(words + name)
+    return Latex(rf"\texttt{{{words}\mbox{{{escape(name)}}}}}")
 
 
 def _is_long(claim: FirstOrderClaim) -> bool:
@@ -124,13 +125,6 @@ def _equation(claim: FirstOrderClaim, sym: Symbols) -> Latex:
     return Latex(f"${equation(a, b, claim.letters)}$")
 
 
-def _as_fraction(claim: FirstOrderClaim) -> Latex | None:
-    a, b = claim.equation.numerator, claim.equation.denominator
-    if a.is_zero or b.is_constant or not (_short(a) and _short(b)):
-        return None
-    return fraction(a, b, claim.letters.variable)
-
-
 def _as_written(text: str | None) -> Latex | None:
     if text is None or len(text) > AS_WRITTEN_PRINTED or not text.strip():
         return None
@@ -140,7 +134,10 @@ def _as_written(text: str | None) -> Latex | None:
 def _as_read(claim: FirstOrderClaim) -> Latex | None:
     if len(claim.as_written) > AS_WRITTEN_PRINTED:
         return None
-    return _as_written(read_equation(claim.as_written, letters=claim.letters).echo)
+    echo = read_equation(claim.as_written, letters=claim.letters).echo
+    if "".join(echo.split()) == "".join(claim.as_written.split()):
+        return None
+    return _as_written(echo)
 
 
 def _claimed(

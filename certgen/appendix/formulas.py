@@ -14,24 +14,26 @@ from certgen.notation.latex_writer import (
     integer,
     polynomial,
     power_product,
-    rational,
 )
 from certgen.polynomial import Polynomial, write_integer, write_polynomial
 
 __all__ = [
-    "DIGITS_PER_CELL",
     "EXPONENT_DIGITS",
     "FACTORS_LIMIT",
+    "INLINE",
     "LINE",
     "TERMS_LIMIT",
     "TEXT_LIMIT",
     "WRITTEN_LINES",
     "Printer",
+    "is_long",
     "is_long_exponent",
     "is_omitted",
     "join_numbers",
     "lines_of",
+    "listing",
     "prose",
+    "show",
     "signed_factor",
     "signed_sum",
     "symbolic_product",
@@ -56,8 +58,8 @@ LINE = 60
 EXPONENT_DIGITS = 20
 """An exponent with more digits cannot stand as one: TeX breaks no superscript."""
 
-DIGITS_PER_CELL = 12
-"""Numbers of spot checks stand in a table when they fit a pocket calculator."""
+INLINE = 36
+"""Formulas stand in the sentence up to this many characters of strict notation."""
 
 _BREAK = r"\certgenhere "
 
@@ -86,9 +88,16 @@ class Printer:
             return self._omitted(value)
         return _tag(name, polynomial(value, letter or self.letter))
 
-    def number(self, name: str, value: Fraction) -> Latex:
-        """Return a tagged rational number."""
-        return _tag(name, rational(value))
+    def power(self, name: str, base: Polynomial, exponent: int) -> Latex:
+        """Return base^exponent as one tagged formula, or the size of the base."""
+        if is_omitted(base):
+            return Latex(f"{self._omitted(base)}, to the power ${integer(exponent)}$")
+        return _tag(name, power_product([Power(base=base, exponent=Fraction(exponent))],
+                                        self.letter))
+
+    def value(self, name: str, value: Fraction | int) -> Latex:
+        """Return a tagged rational number with a slash, for running text."""
+        return _tag(name, _inline(Fraction(value)))
 
     def product(self, powers: Sequence[Power]) -> Latex | None:
         """Return a product of powers written out, or None when that is long."""
@@ -107,6 +116,28 @@ class Printer:
             rf"\certgenomitted{{{value.degree}}}{{{terms}}}{{{digits}}}"
             f"{{{typewriter(self.file)}}}"
         )
+
+
+def show(*values: Polynomial) -> Latex:
+    r"""Return `inline` or `display`: the macro (after \\certgen) for these formulas."""
+    return Latex("display" if is_long(*values) else "inline")
+
+
+def is_long(*values: Polynomial) -> bool:
+    """Whether these formulas are too long to stand in a sentence."""
+    return sum(len(write_polynomial(value)) for value in values) > INLINE
+
+
+def cell_width(texts: Iterable[str], least: float) -> float:
+    """About how many em the widest of these formulas in strict notation takes."""
+    return max(least, 1 + 0.5 * max((len(text) for text in texts), default=0))
+
+
+def listing(items: Sequence[str]) -> Latex:
+    """Return `A`, `A and B`, or `A, B and C`."""
+    if len(items) < 2:
+        return Latex("".join(items))
+    return Latex(", ".join(items[:-1]) + " and " + items[-1])
 
 
 def _tag(name: str, content: str) -> Latex:
@@ -129,10 +160,7 @@ def signed_sum(values: Sequence[int]) -> Latex:
 
 def join_numbers(values: Sequence[int]) -> Latex:
     """Return `$2$, $3$ and $5$`."""
-    texts = [f"${integer(value)}$" for value in values]
-    if len(texts) < 2:
-        return Latex("".join(texts))
-    return Latex(", ".join(texts[:-1]) + " and " + texts[-1])
+    return listing([f"${integer(value)}$" for value in values])
 
 
 def is_long_exponent(value: Fraction) -> bool:
@@ -158,6 +186,7 @@ def symbolic_product(symbol: str, exponents: Sequence[Fraction], name: str) -> L
 
 
 def _inline(value: Fraction) -> str:
+    """n/d on one line."""
     text = str(integer(value.numerator))
     return text if value.denominator == 1 else f"{text}/{integer(value.denominator)}"
 
@@ -178,8 +207,13 @@ def typewriter(text: str) -> Latex:
     words = []
     for word in text.split():
         tokens = [piece for token in _TOKEN.findall(word) for piece in _pieces(token, 12)]
-        words.append(_BREAK.join(escape(token) for token in tokens))
+        words.append(_BREAK.join(_in_typewriter(token) for token in tokens))
     return Latex(r"\texttt{" + " ".join(words) + "}")
+
+
+def _in_typewriter(text: str) -> str:
+    """Escaped; the old font encoding has these signs in typewriter type only by number."""
+    return "".join(rf"\char{ord(c)}{{}}" if c in "\\{}<>|" else escape(c) for c in text)
 
 
 def prose(text: str) -> Latex:

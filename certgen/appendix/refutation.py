@@ -2,92 +2,52 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from dataclasses import dataclass
-from math import isqrt, lcm
+from math import lcm
 
+from certgen.appendix.bezout import BezoutShown, build_bezout
 from certgen.appendix.common import Head, build_head, printer_of
-from certgen.appendix.formulas import FACTORS_LIMIT, Printer, join_numbers, signed_factor
-from certgen.appendix.strip import StripItem, build_strip
+from certgen.appendix.formulas import (
+    FACTORS_LIMIT,
+    LINE,
+    Printer,
+    is_long,
+    join_numbers,
+    show,
+    signed_factor,
+)
+from certgen.appendix.obstructions import ObstructionShown, build_obstructions
+from certgen.appendix.strip import Strip, build_strip
+from certgen.appendix.values import derivative, fits, multiply
 from certgen.certificate import (
-    IrrationalResidue,
-    MultiplePole,
     NoAlgebraicSolution,
-    PolynomialPart,
     PolynomialPartModP,
     ResidueOutsidePrimeField,
 )
 from certgen.checker import CheckedCertificate
-from certgen.checker.facts import IrrationalResidueFacts, NoAlgebraicFacts, PrimeStatus
+from certgen.checker.facts import NoAlgebraicFacts, ReductionFacts
+from certgen.claim import FirstOrderEquation
 from certgen.errors import DefectError
 from certgen.notation.latex_writer import Latex, integer, rational
 from certgen.polynomial import Polynomial, write_polynomial
 
-__all__ = ["CounterPrimePart", "Density", "ObstructionShown", "Refutation", "build_refutation"]
+__all__ = ["CounterPrimePart", "Density", "Refutation", "build_refutation"]
 
 HAND_PRIME = 31
 HAND_DEGREE = 3
 HAND_DIVISION = 8
-HAND_DIGITS = 12
+PRINTED_RADICAL = 12
+"""Degree up to which the checker gives a Bezout line for the squarefree part."""
 
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class PolynomialPartShown:
-    """a = quotient*b + remainder; `cost` orders the obstructions by their length."""
-
-    kind: str = PolynomialPart.KIND
-    cost: int
-    by_hand: bool
-    quotient: Latex
-    remainder: Latex
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class MultiplePoleShown:
-    """A factor with the order of the poles at its roots."""
-
-    kind: str = MultiplePole.KIND
-    cost: int
-    factor: Latex
-    order: Latex
-    one_root: bool
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class IrrationalResidueShown:
-    """The residues numerator/derivative and the polynomial R that they satisfy.
-
-    `quadratic` says that R is shown to have no rational root by its discriminant,
-    between two squares or negative; otherwise by a prime.
-    """
-
-    kind: str = IrrationalResidue.KIND
-    cost: int
-    by_hand: bool
-    factor: Latex
-    numerator: Latex
-    derivative: Latex
-    residue_polynomial: Latex
-    quadratic: bool
-    negative: bool
-    discriminant: Latex
-    discriminant_sum: Latex
-    root_below: Latex
-    root_above: Latex
-    rootless_prime: Latex
-    rootless_by_hand: bool
-
-
-ObstructionShown = PolynomialPartShown | MultiplePoleShown | IrrationalResidueShown
+HAND_EXPANSION = 20
+"""Degree up to which a power modulo p is multiplied out on the page."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class PowerOfFactor:
     """factor^multiplicity in b."""
 
-    factor: Latex
-    multiplicity: Latex
-    simple: bool
+    power: Latex
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -96,7 +56,16 @@ class CounterPrimePart:
 
     p: Latex
     kind: str
-    goodness: str
+    goodness_how: str
+    goodness: BezoutShown | None
+    radical_degree: int
+    radical: Latex
+    show_radical: Latex
+    leading: Latex | None
+    long_reduced: bool
+    show_factor: Latex
+    factor_is_denominator: bool
+    long_residue: bool
     numerator: Latex
     denominator: Latex
     cancelled: bool
@@ -112,7 +81,10 @@ class CounterPrimePart:
     irreducible_by_hand: bool
     last_residue_class: Latex
     p_curvature: Latex | None
+    expansion: Latex | None
     none_smaller: bool
+    leading_bad: Latex
+    leading_bad_count: int
     bad: Latex
     bad_count: int
     zero: Latex
@@ -139,13 +111,15 @@ class Refutation:
     constant_denominator: bool
     squarefree: bool
     decomposition: tuple[PowerOfFactor, ...]
+    decomposition_by_hand: bool
     factor_count: Latex
     constant_numerator: bool
     lowest_terms_prime: Latex
+    lowest_terms: BezoutShown | None
     obstructions: tuple[ObstructionShown, ...]
     counter_prime: CounterPrimePart
     density: Density
-    strip: tuple[StripItem, ...]
+    strip: Strip
 
 
 def build_refutation(checked: CheckedCertificate) -> tuple[Head, Refutation]:
@@ -154,18 +128,24 @@ def build_refutation(checked: CheckedCertificate) -> tuple[Head, Refutation]:
     if not (isinstance(proof, NoAlgebraicSolution) and isinstance(facts, NoAlgebraicFacts)):
         raise DefectError("the facts do not belong to the proof")
     printer, head = printer_of(checked), build_head(checked)
-    parts = _obstructions(printer, head.sym.z, proof, facts)
+    equation, sym = claim.equation, head.sym
+    parts = build_obstructions(printer, sym, proof, facts)
     return head, Refutation(
         beta=signed_factor(facts.beta),
         beta_is_one=facts.beta == 1,
         constant_denominator=claim.equation.denominator.is_constant,
         squarefree=all(f.multiplicity == 1 for f in proof.squarefree_decomposition),
         decomposition=_decomposition(printer, proof),
+        decomposition_by_hand=claim.equation.denominator.degree <= HAND_DIVISION,
         factor_count=integer(len(proof.squarefree_decomposition)),
         constant_numerator=claim.equation.numerator.is_constant,
         lowest_terms_prime=integer(proof.lowest_terms_prime),
         obstructions=parts,
-        counter_prime=_counter_prime(printer, proof, facts),
+        lowest_terms=build_bezout(
+            printer, "lowest-terms", facts.lowest_terms, (sym.b, sym.a),
+            (equation.denominator, equation.numerator),
+        ),
+        counter_prime=_counter_prime(printer, head, equation, proof, facts),
         density=_density(proof, facts),
         strip=build_strip(facts.strip),
     )
@@ -177,99 +157,11 @@ def _decomposition(printer: Printer, proof: NoAlgebraicSolution) -> tuple[PowerO
         return ()
     return tuple(
         PowerOfFactor(
-            factor=printer.polynomial(f"squarefree-factor-{k}", entry.factor),
-            multiplicity=integer(entry.multiplicity),
-            simple=entry.multiplicity == 1,
+            power=printer.polynomial(f"squarefree-factor-{k}", entry.factor)
+            if entry.multiplicity == 1
+            else printer.power(f"squarefree-power-{k}", entry.factor, entry.multiplicity),
         )
         for k, entry in enumerate(entries, 1)
-    )
-
-
-# --------------------------------------------------------------------------
-# over Q
-
-
-def _size(*values: Polynomial) -> int:
-    return sum(len(write_polynomial(value)) for value in values)
-
-
-def _obstructions(
-    printer: Printer, z: str, proof: NoAlgebraicSolution, facts: NoAlgebraicFacts
-) -> tuple[ObstructionShown, ...]:
-    """The obstructions, the one that is shortest to print first."""
-    irrational = iter(facts.irrational)
-    parts: list[ObstructionShown] = []
-    for k, item in enumerate(proof.obstructions, 1):
-        if isinstance(item, PolynomialPart):
-            parts.append(_polynomial_part(printer, item, facts))
-        elif isinstance(item, MultiplePole):
-            parts.append(_multiple_pole(printer, k, item))
-        else:
-            parts.append(_irrational(printer, z, k, item, next(irrational)))
-    return tuple(sorted(parts, key=lambda part: part.cost))
-
-
-def _polynomial_part(
-    printer: Printer, item: PolynomialPart, facts: NoAlgebraicFacts
-) -> PolynomialPartShown:
-    remainder = facts.remainder
-    if remainder is None:
-        raise DefectError("the remainder of the polynomial part is missing")
-    return PolynomialPartShown(
-        # seen from the degrees; the data count only when they are long
-        cost=max(0, _size(item.quotient, remainder) - 200),
-        by_hand=item.quotient.degree <= HAND_DEGREE and remainder.degree <= HAND_DIVISION,
-        quotient=printer.polynomial("quotient", item.quotient),
-        remainder=printer.polynomial("remainder", remainder),
-    )
-
-
-def _multiple_pole(printer: Printer, k: int, item: MultiplePole) -> MultiplePoleShown:
-    return MultiplePoleShown(
-        cost=_size(item.factor),
-        factor=printer.polynomial(f"multiple-pole-{k}", item.factor),
-        order=integer(item.order),
-        one_root=item.factor.degree == 1,
-    )
-
-
-def _irrational(
-    printer: Printer, z: str, k: int, item: IrrationalResidue, facts: IrrationalResidueFacts
-) -> IrrationalResidueShown:
-    residue_polynomial, disc = item.residue_polynomial, facts.discriminant
-    root = isqrt(disc) if disc is not None and disc > 0 else 0
-    short = all(abs(c) < 10**HAND_DIGITS for c in residue_polynomial.numerators)
-    return IrrationalResidueShown(
-        # a quadratic needs one line more than a multiple pole, others a prime
-        cost=_size(item.factor, residue_polynomial) + (0 if disc is not None else 200),
-        by_hand=short and item.factor.degree == 2 and residue_polynomial.degree == 2,
-        factor=printer.polynomial(f"residue-factor-{k}", item.factor),
-        numerator=printer.polynomial(f"residue-numerator-{k}", facts.numerator),
-        derivative=printer.polynomial(f"residue-derivative-{k}", facts.derivative),
-        residue_polynomial=printer.polynomial(
-            f"residue-polynomial-{k}", residue_polynomial, z
-        ),
-        quadratic=disc is not None,
-        negative=disc is not None and disc < 0,
-        discriminant=integer(disc or 0),
-        discriminant_sum=_discriminant_sum(residue_polynomial),
-        root_below=integer(root),
-        root_above=integer(root + 1),
-        rootless_prime=integer(item.rootless_prime),
-        rootless_by_hand=item.rootless_prime <= HAND_PRIME
-        and residue_polynomial.degree <= HAND_DEGREE,
-    )
-
-
-def _discriminant_sum(quadratic: Polynomial) -> Latex:
-    """B^2 - 4AC with the coefficients put in, unevaluated."""
-    if quadratic.degree != 2:
-        return Latex("")
-    low, middle, top = quadratic.numerators
-    middle_text = integer(middle) if middle >= 0 else f"({integer(middle)})"
-    return Latex(
-        rf"{middle_text}^2\certgenbreak -4\cdot {signed_factor(top)}"
-        rf"\certgenbreak\cdot {signed_factor(low)}"
     )
 
 
@@ -278,18 +170,42 @@ def _discriminant_sum(quadratic: Polynomial) -> Latex:
 
 
 def _counter_prime(
-    printer: Printer, proof: NoAlgebraicSolution, facts: NoAlgebraicFacts
+    printer: Printer,
+    head: Head,
+    equation: FirstOrderEquation,
+    proof: NoAlgebraicSolution,
+    facts: NoAlgebraicFacts,
 ) -> CounterPrimePart:
     value, reduced = proof.counter_prime, facts.reduction
     witness, p = value.witness, value.p
     outside = isinstance(witness, ResidueOutsidePrimeField)
     factor = None if isinstance(witness, PolynomialPartModP) else witness.factor
     small = p <= HAND_PRIME and reduced.denominator.degree <= HAND_DIVISION
-    bad, zero = _by_status(facts.smaller_primes)
+    radical, degree = _radical(proof)
+    goodness = build_bezout(
+        printer, "good", reduced.bezout, (head.sym.S, f"{head.sym.S}'"),
+        (radical, derivative(radical)),
+    )  # fmt: skip
+    leading = equation.denominator.numerators[-1]
+    bad = [q.p for q in facts.smaller_primes if q.status == "bad"]
+    zero = [q.p for q in facts.smaller_primes if q.status == "zero"]
+    expansion = _expansion(reduced, p, proof)
     return CounterPrimePart(
         p=integer(p),
         kind=witness.KIND,
-        goodness=_goodness(proof, p),
+        goodness_how="by sight" if degree <= 1
+        else goodness.how if goodness is not None else "by machine",
+        goodness=goodness if degree > 1 else None,
+        radical_degree=degree,
+        radical=printer.polynomial("radical", radical),
+        show_radical=show(radical),
+        leading=integer(leading) if fits(leading) else None,
+        long_reduced=is_long(reduced.numerator, reduced.denominator),
+        show_factor=show(factor) if factor is not None else Latex("inline"),
+        factor_is_denominator=factor is not None
+        and factor.degree == reduced.denominator.degree,
+        long_residue=isinstance(witness, ResidueOutsidePrimeField)
+        and is_long(witness.residue, reduced.derivative),
         numerator=printer.polynomial("reduced-numerator", reduced.numerator),
         denominator=printer.polynomial("reduced-denominator", reduced.denominator),
         cancelled=reduced.common_factor.degree > 0,
@@ -308,9 +224,12 @@ def _counter_prime(
         and p <= HAND_PRIME,
         last_residue_class=integer(p - 1),
         p_curvature=_p_curvature(printer, proof),
+        expansion=printer.polynomial("expansion", expansion) if expansion else None,
         none_smaller=not facts.smaller_primes,
-        bad=join_numbers(bad),
-        bad_count=len(bad),
+        leading_bad=join_numbers([q for q in bad if leading % q == 0]),
+        leading_bad_count=sum(1 for q in bad if leading % q == 0),
+        bad=join_numbers([q for q in bad if leading % q]),
+        bad_count=sum(1 for q in bad if leading % q),
         zero=join_numbers(zero),
         zero_count=len(zero),
     )
@@ -322,17 +241,27 @@ def _p_curvature(printer: Printer, proof: NoAlgebraicSolution) -> Latex | None:
     return printer.polynomial("p-curvature", proof.p_curvature.numerator)
 
 
-def _goodness(proof: NoAlgebraicSolution, p: int) -> str:
-    """How the reader sees that rad b stays squarefree modulo p."""
-    degree = sum(f.factor.degree for f in proof.squarefree_decomposition)
-    if degree <= 1:
-        return "by sight"
-    return "by hand" if degree <= HAND_DEGREE and p <= HAND_PRIME else "by machine"
+def _radical(proof: NoAlgebraicSolution) -> tuple[Polynomial, int]:
+    """The squarefree part of b, multiplied out where it is printed, and its degree."""
+    degree = sum(entry.factor.degree for entry in proof.squarefree_decomposition)
+    out = Polynomial.from_integers([1])
+    for entry in proof.squarefree_decomposition if degree <= PRINTED_RADICAL else ():
+        out = multiply(out, entry.factor)
+    return out, degree
 
 
-def _by_status(primes: Sequence[PrimeStatus]) -> tuple[list[int], list[int]]:
-    bad = [prime.p for prime in primes if prime.status == "bad"]
-    return bad, [prime.p for prime in primes if prime.status == "zero"]
+def _expansion(
+    reduced: ReductionFacts, p: int, proof: NoAlgebraicSolution
+) -> Polynomial | None:
+    """a*b^(p-1) modulo p, from which the value of the p-curvature is read off."""
+    degree = reduced.numerator.degree + (p - 1) * reduced.denominator.degree
+    if proof.p_curvature is None or p > HAND_PRIME or degree > HAND_EXPANSION:
+        return None
+    out = reduced.numerator
+    for _ in range(p - 1):
+        product = multiply(out, reduced.denominator)
+        out = Polynomial.from_integers(c % p for c in product.numerators)
+    return out if len(write_polynomial(out)) <= 2 * LINE else None
 
 
 def _density(proof: NoAlgebraicSolution, facts: NoAlgebraicFacts) -> Density:

@@ -8,7 +8,9 @@ from dataclasses import dataclass
 from certgen.checker.facts import PrimeStatus
 from certgen.notation.latex_writer import Latex, integer
 
-__all__ = ["StripItem", "build_strip"]
+__all__ = ["Strip", "StripItem", "build_strip"]
+
+ROW = 12
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -20,10 +22,28 @@ class StripItem:
     zero: bool
 
 
-def build_strip(primes: Sequence[PrimeStatus]) -> tuple[StripItem, ...]:
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Strip:
+    """Rows of at most 12 primes, and which marks occur in them."""
+
+    rows: tuple[tuple[StripItem, ...], ...]
+    has_bad: bool
+    has_zero: bool
+    has_nonzero: bool
+
+
+def build_strip(primes: Sequence[PrimeStatus]) -> Strip:
     """Return the strip in its order."""
-    return tuple(
-        StripItem(p=integer(prime.p), bad=prime.status == "bad",
-                  zero=prime.status == "zero")
+    items = [
+        StripItem(
+            p=integer(prime.p), bad=prime.status == "bad", zero=prime.status == "zero"
+        )
         for prime in primes
+    ]
+    statuses = {prime.status for prime in primes}
+    return Strip(
+        rows=tuple(tuple(items[k : k + ROW]) for k in range(0, len(items), ROW)),
+        has_bad="bad" in statuses,
+        has_zero="zero" in statuses,
+        has_nonzero="nonzero" in statuses,
     )

@@ -7,7 +7,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 from certgen.appendix.common import build_head
-from certgen.appendix.formulas import lines_of, typewriter
+from certgen.appendix.formulas import prose, typewriter
 from certgen.certificate import (
     AlgebraicSolution,
     ClosedFormDisagrees,
@@ -16,9 +16,9 @@ from certgen.certificate import (
 from certgen.checker import CheckedCertificate
 from certgen.notation.latex_writer import Latex, equation, integer, letter, power_product
 
-__all__ = ["SummaryRow", "build_summary", "latex_summary", "summary_width"]
+__all__ = ["Summary", "SummaryRow", "build_summary", "latex_summary"]
 
-NARROW_ID = 14
+NARROW_ID = 16
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -26,6 +26,7 @@ class SummaryRow:
     """One certificate in the table: the claim, the verdict, the main number."""
 
     id: Latex
+    title: Latex | None
     equation: Latex
     shows_equation: bool
     every: bool
@@ -36,21 +37,41 @@ class SummaryRow:
     counter_prime: Latex | None
 
 
-def summary_width(checked: Sequence[CheckedCertificate]) -> Latex | None:
-    """The width of the column of ids; None where they are too long for one."""
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Summary:
+    """The table; `width` of the column of ids, None where they are too long for one."""
+
+    rows: tuple[SummaryRow, ...]
+    width: Latex | None
+    row_width: Latex
+    has_degree: bool
+    has_prime: bool
+
+
+def build_summary(checked: Sequence[CheckedCertificate]) -> Summary:
+    """Return the table of these certificates."""
+    rows = tuple(_row(item) for item in checked)
     longest = max(len(item.certificate.claim.id) for item in checked)
-    return Latex(f"{0.55 * longest + 1:.2f}em") if longest <= NARROW_ID else None
+    width = max(5.5, 0.55 * longest + 1)
+    return Summary(
+        rows=rows,
+        width=Latex(f"{width:.2f}em") if longest <= NARROW_ID else None,
+        row_width=Latex(f"{width + 11:.2f}em"),
+        has_degree=any(row.degree is not None for row in rows),
+        has_prime=any(row.degree is None for row in rows),
+    )
 
 
-def build_summary(checked: CheckedCertificate) -> SummaryRow:
+def _row(checked: CheckedCertificate) -> SummaryRow:
     """Return the row of one certificate."""
     claim, proof = checked.certificate.claim, checked.certificate.proof
     actual = proof.actual if isinstance(proof, ClosedFormDisagrees) else proof
-    sides = (claim.equation.numerator, claim.equation.denominator)
+    head = build_head(checked)
     return SummaryRow(
         id=typewriter(claim.id),
-        equation=build_head(checked).equation,
-        shows_equation=lines_of(sides) <= 4,
+        title=prose(claim.title) if claim.title else None,
+        equation=head.equation,
+        shows_equation=not head.is_long,
         every=claim.subject == "every solution",
         algebraic=claim.asserts == "algebraic",
         has_closed_form=claim.solution is not None,

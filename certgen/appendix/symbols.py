@@ -59,6 +59,9 @@ class Symbols:
     q: Latex
     m: Latex
     zeta: Latex
+    T: Latex
+    Q: Latex
+    h: Latex
 
 
 def choose_symbols(letters: Letters) -> Symbols:
