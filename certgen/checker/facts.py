@@ -1,15 +1,14 @@
 """What the checker computed on the way to its answer: the numbers an appendix prints.
 
-Everything here was recomputed from the stored claim and proof by the rules of
-`certgen.checker.rules`; nothing is copied from the prover.  r = a/b is the
+Everything here was recomputed from the stored claim and proof, over the arithmetic of
+the rules; nothing is copied from the prover.  r = a/b is the
 equation y' = r*y, beta the integer with b = beta * product of the stored factors.
 """
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from fractions import Fraction
-from typing import Literal
+from typing import Literal, NamedTuple
 
 from certgen.polynomial import Polynomial
 
@@ -29,16 +28,14 @@ __all__ = [
 ]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class PrimeStatus:
+class PrimeStatus(NamedTuple):
     """One prime of the strip: bad reduction, p-curvature zero, or not zero."""
 
     p: int
     status: Literal["bad", "zero", "nonzero"]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class IdentitySpot:
+class IdentitySpot(NamedTuple):
     """All terms of the two identities at the integer `point`, where b is not zero.
 
     b(point) = beta * product of `bases`, and
@@ -54,8 +51,7 @@ class IdentitySpot:
     terms: tuple[int, ...]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Bezout:
+class Bezout(NamedTuple):
     """left*f + right*g = 1 modulo the prime p; coefficients from 0 to p - 1."""
 
     p: int
@@ -63,8 +59,7 @@ class Bezout:
     right: Polynomial
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class RootValues:
+class RootValues(NamedTuple):
     """The values of a and b' at the rational root of a linear factor."""
 
     root: Fraction
@@ -72,8 +67,7 @@ class RootValues:
     derivative: Fraction
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class AlgebraicFacts:
+class AlgebraicFacts(NamedTuple):
     """`AlgebraicSolution`: the split identity b = beta*V, N*a = beta*sum n_i v_i' V/v_i.
 
     `numerators` are the n_i = N*rho_i; `derivatives` the v_i'; `products` the
@@ -100,24 +94,21 @@ class AlgebraicFacts:
     strip: tuple[PrimeStatus, ...]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class DisagreementFacts:
+class DisagreementFacts(NamedTuple):
     """Orders of the claimed bases along the disagreeing factor (0 where it divides not)."""
 
     orders: tuple[int, ...]
     divides_denominator: bool
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class ClosedFormFacts:
+class ClosedFormFacts(NamedTuple):
     """`ClosedFormDisagrees`: the actual solution, and why the claimed one is another."""
 
     actual: AlgebraicFacts
     disagreement: DisagreementFacts
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class ProductSpot:
+class ProductSpot(NamedTuple):
     """Values at the integer `point`: `total` = `factor` * `cofactor`.
 
     `numerator` and `derivative` are A and B there, so that the total can be
@@ -132,8 +123,7 @@ class ProductSpot:
     cofactor: int
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class IrrationalResidueFacts:
+class IrrationalResidueFacts(NamedTuple):
     """For one `IrrationalResidue` obstruction, in the order of the certificate.
 
     `numerator` and `derivative`: A and B in Z[x] of degree below deg g with
@@ -149,8 +139,7 @@ class IrrationalResidueFacts:
     spot: ProductSpot
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class ReductionFacts:
+class ReductionFacts(NamedTuple):
     """The equation modulo the counter-prime p; coefficients from 0 to p - 1.
 
     a = common_factor*numerator and b = common_factor*denominator mod p, with a
@@ -170,8 +159,7 @@ class ReductionFacts:
     bezout: Bezout | None
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class NoAlgebraicFacts:
+class NoAlgebraicFacts(NamedTuple):
     """`NoAlgebraicSolution`: what was recomputed for the refutation.
 
     `lowest_terms` is for b and a, in this order, modulo the lowest-terms prime, None
