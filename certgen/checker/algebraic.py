@@ -74,13 +74,18 @@ def logarithmic_derivative(arithmetic: Arithmetic, powers: tuple[Power, ...]) ->
     pairs = []
     for power in powers:
         v = to_z(arithmetic, power.base)
-        pairs.append((v.derivative().times(int(degree * power.exponent)), v))
+        pairs.append((v.derivative().times(_scaled(power.exponent, degree)), v))
     one, zero = arithmetic.integer_polynomial([1]), arithmetic.integer_polynomial([])
 
     def combine(f: Pair, g: Pair) -> Pair:
         return f[0] * g[1] + g[0] * f[1], f[1] * g[1]
 
     return fold(pairs, combine, (zero, one))
+
+
+def _scaled(exponent: Fraction, degree: int) -> int:
+    """degree * exponent, for a multiple of the exponent's denominator."""
+    return exponent.numerator * (degree // exponent.denominator)
 
 
 def check_algebraic_solution(
@@ -156,8 +161,10 @@ def _check_partial_fractions(
         base = bases[residue]
         _require_degree((f.degree for f in factors), base.degree, "partial-fractions", path)
         product = fold((to_z(arithmetic, f) for f in factors), lambda f, g: f * g, one)
-        name = f"the base with exponent {show(residue)}"
-        require_equal(to_z(arithmetic, base), product, "partial-fractions", path, name)
+        require_equal(
+            to_z(arithmetic, base), product, "partial-fractions", path,
+            "the base with the same exponent",
+        )  # fmt: skip
 
 
 def _check_minimal_polynomial(proof: AlgebraicSolution, path: str) -> None:
@@ -165,7 +172,7 @@ def _check_minimal_polynomial(proof: AlgebraicSolution, path: str) -> None:
 
     def side(sign: int) -> tuple[Power, ...]:
         return tuple(
-            Power(base=p.base, exponent=sign * proof.degree * p.exponent)
+            Power(base=p.base, exponent=Fraction(sign * _scaled(p.exponent, proof.degree)))
             for p in proof.solution
             if sign * p.exponent > 0
         )
@@ -206,9 +213,7 @@ def _check_eisenstein(
         c = base.value(value.point) * (d * radical(d) if d > 1 else 1)
         reject_unless(
             _suffices(base, value.point, value.constant, c), "eisenstein-constant",
-            f"{path}.constant",
-            f"a constant that suffices for the base with exponent {show(power.exponent)}",
-            value.constant,
+            f"{path}.constant", "a constant that suffices for every base", value.constant,
         )  # fmt: skip
 
 
