@@ -69,7 +69,7 @@ CUBIC = "(2*x^3 - 2*x)*y' = (3*x^2 - 1)*y"
         ("y' = y^1/x^(2-1)", "(x)*y' = (1)*y"),
         ("d'(x) = d(x)", "(1)*y' = (1)*y"),
         ("dd/dx = d/x", "(x)*y' = (1)*y"),
-        ("y' = D*y", "(1)*y' = (x)*y"),
+        ("y'(D) = D*y", "(1)*y' = (x)*y"),
     ],
 )
 def test_every_usual_form_of_an_equation_is_read(text: str, expected: str) -> None:
@@ -84,7 +84,7 @@ def test_every_usual_form_of_an_equation_is_read(text: str, expected: str) -> No
     [
         ("y' = 0", "x", "y"), ("x' = 0", "t", "x"), ("F'(z) = F(z)", "z", "F"),
         ("dphi/dt = phi", "t", "phi"), ("u' = u/w", "w", "u"), ("Dy = y*s", "s", "y"),
-        ("D' = D*x", "x", "D"), ("e' = i*e", "i", "e"), ("Phi' = alpha*Phi", "alpha", "Phi"),
+        ("D' = D*x", "x", "D"), ("e' = x*e", "x", "e"), ("Phi' = theta*Phi", "theta", "Phi"),
     ],
 )  # fmt: skip
 def test_the_letters_are_found(text: str, variable: str, function: str) -> None:
@@ -119,6 +119,16 @@ def test_the_echo_is_fully_parenthesised(text: str, echo: str) -> None:
     assert read_equation(echo, letters=read.letters).equation == read.equation
 
 
+@pytest.mark.parametrize("letter", ["a", "k", "n", "C", "alpha", "lambda"])
+def test_a_letter_that_may_be_a_constant_is_not_taken_for_the_variable(letter: str) -> None:
+    """In y' = a*y the letter a is an error with its place, unless y(a) or dy/da says it."""
+    error = failure(read_equation, f"y' = {letter}*y")
+    assert "may be the variable or a constant" in error.message and error.column == 6
+    assert error.hint is not None and f"y({letter})" in error.hint
+    for form in (f"y'({letter}) = {letter}*y", f"dy/d{letter} = {letter}*y"):
+        assert read_equation(form).letters == Letters(variable=letter)
+
+
 # -- random equations in many forms
 
 POLYNOMIALS = st.lists(st.integers(-9, 9), min_size=1, max_size=5).map(
@@ -131,7 +141,7 @@ def test_many_forms_of_one_equation_give_the_same_claim(
     a: Polynomial, b: Polynomial, data: st.DataObject
 ) -> None:
     """sympy cancels a/b and judges the canonical equation of every form."""
-    letters = Letters(variable=data.draw(st.sampled_from(["x", "t", "alpha"])),
+    letters = Letters(variable=data.draw(st.sampled_from(["x", "t", "theta"])),
                       function=data.draw(st.sampled_from(["y", "F", "psi"])))
     v, f = letters.variable, letters.function
     top, low = write_polynomial(a, v), write_polynomial(b, v)

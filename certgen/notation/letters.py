@@ -2,7 +2,8 @@
 
 The unknown function is the letter that carries the prime, stands in dy/dx, or
 follows d/dx or D; the variable is the letter in dx or in y(x), else the only
-other letter.  Anything that is not clear is an error.
+other letter if it is a usual name of a variable (in y' = a*y the letter a may be
+a constant).  Anything that is not clear is an error.
 """
 
 from __future__ import annotations
@@ -17,6 +18,10 @@ from certgen.notation.source import Source
 from certgen.notation.tokens import Kind, Token
 
 __all__ = ["find_letters", "mark_derivatives", "word_place"]
+
+_USUAL_VARIABLES = frozenset(
+    [*"qrstuvwxyzQRSTUVWXYZ", "zeta", "eta", "theta", "xi", "tau", "omega"]
+)
 
 _APPLIED = r"(?:\([nd]\))?"
 _DERIVATIVE = re.compile(rf"F\(d([nd]){_APPLIED}\)\(d([nd])\)")
@@ -218,6 +223,13 @@ def _infer_variable(source: Source, marks: _Marks, function: str) -> str:
                     start, start + len(token.word), f"unknown name '{token.word}'",
                     "a name is one letter; write products with *")
         raise _two(source, "variable", others)
+    if others and others[0].value not in _USUAL_VARIABLES:
+        token = others[0]
+        raise source.error(
+            token.start, token.end,
+            f"'{token.value}' may be the variable or a constant",
+            f"write {function}({token.value}) or d{function}/d{token.value} if it is the "
+            "variable; parameters are not supported")
     return others[0].value if others else ("t" if function == "x" else "x")
 
 
