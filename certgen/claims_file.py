@@ -70,7 +70,8 @@ def make_claim(
             note=note,
         )
     except (ClaimError, LimitError) as error:
-        raise type(error)(f"{where}{error}") from None
+        kind = LimitError if isinstance(error, LimitError) else ClaimError
+        raise kind(f"{where}{error}") from None
 
 
 def _read_equation(text: str, where: str) -> EquationAsRead:
@@ -95,8 +96,8 @@ def _named(error: CertgenError, key: str) -> CertgenError:
     """Return the same error with the key in front."""
     if isinstance(error, ExpressionError):
         return ExpressionError(
-            f"{key}: {error.message}", line=error.line, column=error.column,
-            fragment=error.fragment, hint=error.hint)
+            error.message, line=error.line, column=error.column,
+            fragment=error.fragment, hint=error.hint, where=key)
     return type(error)(f"{key}: {error}")
 
 

@@ -152,8 +152,10 @@ def _add_check(group: argparse._SubParsersAction[_Parser]) -> None:
     )
     parser.add_argument("paths", nargs="+", metavar="PATH", help="a certificate or a folder")
     parser.add_argument("--arithmetic", choices=("plain", "flint", "both"), default="flint",
-                        help="plain: Python alone; flint: fast (default); both")  # fmt: skip
-    parser.add_argument("--require", choices=("proved",), help="other verdicts: status 1")
+                        help="plain: standard library; flint: python-flint, faster"
+                        " (default); both: the two must agree")  # fmt: skip
+    parser.add_argument("--require", choices=("proved",),
+                        help="count every other verdict as status 1")  # fmt: skip
     parser.add_argument("--jobs", type=_jobs, metavar="N", help="processes (default: cores)")
     parser.add_argument("--json", action="store_true", help="one line of JSON per file")
 
@@ -172,10 +174,11 @@ def _add_typeset(group: argparse._SubParsersAction[_Parser]) -> None:
 
 def _add_writing(parser: _Parser) -> None:
     parser.add_argument("--out", default=".", metavar="DIR", help="where to write (default: .)")
-    parser.add_argument("--pdf", action="store_true", help="also a document of its own")
+    parser.add_argument("--pdf", action="store_true", help="also write a PDF (needs pdflatex)")
     parser.add_argument("--replace", action="store_true",
-                        help="replace other files of these names")  # fmt: skip
-    parser.add_argument("--json", action="store_true", help="one line of JSON per claim")
+                        help="replace files of these names that belong to another claim "
+                        "or were not made by certgen")  # fmt: skip
+    parser.add_argument("--json", action="store_true", help="one line of JSON for each result")
 
 
 def _jobs(text: str) -> int:

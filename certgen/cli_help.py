@@ -4,16 +4,32 @@ from __future__ import annotations
 
 __all__ = ["CERTIFY", "CHECK", "MAIN", "TYPESET"]
 
-_STATUSES = """\
-exit status:
-  0    all claims proved; all certificates accepted
-  1    a claim refuted; a certificate rejected
+_END = """\
   2    unusable input: malformed, missing, unwritable
-  3    no verdict: a documented limit was reached
+  3    no verdict: a limit was reached (the specification lists them), or certgen
+       found a defect in itself
   4    a format or kind that this version does not know
   130  interrupted
   With several inputs: the first of 2, 1, 4, 3 that occurs.
 """
+
+_CERTIFY_STATUSES = f"""\
+exit status:
+  0    every claim is proved
+  1    a claim is refuted
+{_END}"""
+
+_CHECK_STATUSES = f"""\
+exit status:
+  0    every certificate is accepted, that of a refuted claim too
+  1    a certificate is rejected (or its verdict is not the one of --require)
+{_END}"""
+
+_STATUSES = f"""\
+exit status:
+  0    every claim proved (certify), every certificate accepted (check, typeset)
+  1    a claim refuted (certify), a certificate rejected (check, typeset)
+{_END}"""
 
 MAIN = f"""\
 From a claim to an appendix that a referee can check:
@@ -46,7 +62,7 @@ examples:
   certgen certify claims.toml --out proofs --json
       All claims of a file; one line of JSON for each.
 
-  An equation that begins with a minus sign is given as --equation="-y' = ...".
+  An equation that begins with a minus sign is given as --equation="-y'=...".
 
 a file of claims:
   [[claim]]
@@ -63,7 +79,7 @@ JSON keys:
   list of path and state). Where no certificate was made: name, state, status,
   message.
 
-{_STATUSES}"""
+{_CERTIFY_STATUSES}"""
 
 CHECK = f"""\
 examples:
@@ -83,7 +99,7 @@ JSON keys:
   subject, proof, digest, arithmetic, degree and solution, or counter_prime;
   otherwise message; if rejected: also code, json_path, expected, found.
 
-{_STATUSES}"""
+{_CHECK_STATUSES}"""
 
 TYPESET = f"""\
 examples:
@@ -97,4 +113,4 @@ examples:
   Every certificate is checked first, with both arithmetics; nothing is written
   unless all are accepted.
 
-{_STATUSES}"""
+{_CHECK_STATUSES}"""

@@ -61,8 +61,8 @@ def _read_claims(arguments: argparse.Namespace) -> list[FirstOrderClaim]:
         )
     if keys:
         raise UnusableInputError(
-            f"--{' and --'.join(keys)} belong to --equation; in a file of claims they are "
-            "keys of each claim"
+            f"--{' and --'.join(keys)}: only with --equation; in a file of claims these "
+            "are keys of each claim"
         )
     from certgen.claims_file import read_claims
 
@@ -91,6 +91,8 @@ def _certify_one(claim: FirstOrderClaim, arguments: argparse.Namespace) -> Outco
     except Exception as error:
         failed = failure(claim.id, error)
         outcome = replace(failed, keys={**keys, **failed.keys})
+        if keys and not arguments.json:
+            _print(" not written")
         say(f"{claim.id}: {outcome.message}")
     if arguments.json:
         _print_json(outcome)

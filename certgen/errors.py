@@ -59,7 +59,8 @@ class ExpressionError(UnusableInputError):
     """An expression or equation that cannot be read, with its place.
 
     `line` and `column` count from 1 and point into the text that was given;
-    `fragment` is the offending piece, `hint` says what would be right.
+    `fragment` is the offending piece, `hint` says what would be right, `where`
+    names the text (a file, a claim, a key).
     """
 
     def __init__(
@@ -70,16 +71,21 @@ class ExpressionError(UnusableInputError):
         column: int | None = None,
         fragment: str | None = None,
         hint: str | None = None,
+        where: str | None = None,
     ) -> None:
         self.message = message
         self.line = line
         self.column = column
         self.fragment = fragment
         self.hint = hint
-        super().__init__(message, line, column, fragment, hint)
+        self.where = where
+        super().__init__(message, line, column, fragment, hint, where)
 
     def __str__(self) -> str:
-        place = "" if self.column is None else f"line {self.line}, column {self.column}: "
+        places = [] if self.where is None else [self.where]
+        if self.column is not None:
+            places.append(f"line {self.line}, column {self.column}")
+        place = f"{', '.join(places)}: " if places else ""
         piece = "" if self.fragment is None else f" (at '{shorten(self.fragment)}')"
         hint = "" if self.hint is None else f"; {self.hint}"
         return f"{place}{self.message}{piece}{hint}"

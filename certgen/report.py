@@ -65,8 +65,9 @@ def statement(claim: FirstOrderClaim) -> str:
     """Return what is claimed, as a sentence without its full stop."""
     which, rest = claim.subject.split(" ", 1)
     text = f"{which} non-zero {rest} is {claim.asserts}"
-    if claim.solution_as_written is not None:
-        text += f", namely a constant times {plain(claim.solution_as_written, _SHOWN)}"
+    if claim.solution is not None:
+        product = _product(claim.solution, claim.letters.variable) or "1"
+        text += f", namely a constant times {plain(product, _SHOWN)}"
     return text
 
 
@@ -81,6 +82,8 @@ def rows(checked: CheckedCertificate, echo: str | None = None) -> list[tuple[str
     found = [] if claim.title is None else [("title", plain(claim.title))]
     if echo is not None:
         found.append(("read as", plain(echo, _SHOWN)))
+    if claim.solution_as_written is not None:
+        found.append(("closed form", plain(claim.solution_as_written, _SHOWN)))
     found += [
         ("canonical", plain(str(claim.equation), _SHOWN)),
         ("claim", statement(claim)),
@@ -130,7 +133,8 @@ def _proof_rows(certificate: Certificate) -> list[tuple[str, str]]:
     more = len(proof.obstructions) - _MANY
     if more > 0:
         over_q.append(("", f"and {more} more in the certificate"))
-    return [*over_q, ("counter-prime", reason)]
+    result = ("result", "no non-zero solution is algebraic")
+    return [result, *over_q, ("counter-prime", reason)]
 
 
 def _degree_rows(proof: AlgebraicSolution) -> list[tuple[str, str]]:
@@ -174,7 +178,7 @@ def _obstruction(item: Obstruction, letter: str) -> str:
 
 
 def _irrational(item: IrrationalResidue, where: str) -> str:
-    return f"irrational residues {where}: roots z of {_short(item.residue_polynomial, 'z')}"
+    return f"irrational residues, roots of {_short(item.residue_polynomial, 'z')}, {where}"
 
 
 def _counter_prime(item: CounterPrime, letter: str) -> str:

@@ -24,10 +24,10 @@ __all__ = ["SavedFile", "save", "save_appendix"]
 
 @dataclass(frozen=True, slots=True)
 class SavedFile:
-    """A file and whether it was written now or held the same text already."""
+    """A file, and whether it is new, replaces an older one, or held the same text."""
 
     path: Path
-    state: Literal["written", "unchanged"]
+    state: Literal["written", "replaced", "unchanged"]
 
 
 def save(
@@ -45,6 +45,7 @@ def save(
     """
     claim = certified.claim
     fragment = certified.appendix()
+    _require_pdflatex(pdf)
     make_folder(folder)
     base = Path(folder, claim.id)
     if not replace:
@@ -68,6 +69,7 @@ def save_appendix(
     pdf: bool = False,
 ) -> tuple[SavedFile, ...]:
     """Write `name`.tex (`pdf`: and `name`.pdf) into `folder`, as `save` does."""
+    _require_pdflatex(pdf)
     make_folder(folder)
     base = Path(folder, name)
     if not replace:
@@ -78,11 +80,19 @@ def save_appendix(
     return tuple(saved)
 
 
+def _require_pdflatex(pdf: bool) -> None:
+    if pdf:
+        from certgen.appendix.document import require_pdflatex
+
+        require_pdflatex()
+
+
 def _write(path: Path, text: str) -> SavedFile:
-    if _old_bytes(path) == text.encode("utf-8"):
+    old = _old_bytes(path)
+    if old == text.encode("utf-8"):
         return SavedFile(path, "unchanged")
     write_text_atomically(path, text)
-    return SavedFile(path, "written")
+    return SavedFile(path, "written" if old is None else "replaced")
 
 
 def _write_pdf(path: Path, fragment: str) -> SavedFile:

@@ -163,7 +163,7 @@ class JsonValue:
             yield
         except InvariantError as error:
             raise RejectedError(
-                error.code, self.path, str(error), "another value"
+                error.code, self.path, str(error), shorten(json.dumps(self.value), 100)
             ) from None
         except ClaimError as error:
             raise MalformedError(str(error), path=self.path) from None

@@ -278,7 +278,7 @@ def test_another_claim_of_the_same_id_is_not_replaced(tmp_path: Path) -> None:
             other.save(tmp_path)
         assert {path.name: path.read_bytes() for path in tmp_path.iterdir()} == before
     renamed = certgen.certify("y' = y", id="growth", note="new").save(tmp_path)
-    assert [file.state for file in renamed] == ["written", "written"]
+    assert [file.state for file in renamed] == ["replaced", "replaced"]
     certgen.certify("y' = 2*y", id="growth").save(tmp_path, replace=True)
     assert str(certgen.load(tmp_path / "growth.json").claim.equation) == "(1)*y' = (2)*y"
 

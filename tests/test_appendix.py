@@ -21,6 +21,7 @@ from certgen.appendix import (
 )
 from certgen.appendix.environment import _environment, render
 from certgen.appendix.formulas import Printer, prose, typewriter
+from certgen.appendix.strip import build_strip
 from certgen.appendix.symbols import Symbols, choose_symbols
 from certgen.certificate import (
     AlgebraicSolution,
@@ -38,6 +39,7 @@ from certgen.checker.facts import (
     ClosedFormFacts,
     IrrationalResidueFacts,
     NoAlgebraicFacts,
+    PrimeStatus,
 )
 from certgen.claim import Letters
 from certgen.errors import ClaimError, DefectError, RejectedError
@@ -263,7 +265,7 @@ def _expected(item: CheckedCertificate) -> dict[str, Polynomial]:
 RECOMPUTED = re.compile(
     r"(?:expansion(?:-\d+)?|radical|squarefree-power-\d+|[a-z-]+-point"
     r"|residue-spot-(?:a|derivative)|residue-(?:difference|factor-value|quotient)-\d+"
-    r"|disagreement-(?:root|a|derivative|b)|claimed-(?:slope|value)-\d+)"
+    r"|multiple-pole-root-\d+|disagreement-(?:root|a|derivative|b)|claimed-(?:slope|value)-\d+)"
 )
 
 
@@ -460,7 +462,7 @@ def test_the_squarefree_part_is_printed_in_full() -> None:
     printed = _read_back(checked("whirlpool"))
     assert printed["radical"] == read_polynomial("x^2 - x")
     text = words(typeset(checked("whirlpool")))
-    assert "$S'$\\certgenbreak ${}\\equiv 1$ modulo $2$" in text
+    assert "$S'$${}\\equiv 1$ modulo $2$" in text
 
 
 def test_a_bezout_line_that_is_too_long_is_evaluated() -> None:
@@ -618,7 +620,7 @@ def test_a_closed_form_that_disagrees_shows_the_factor_first() -> None:
     assert printed["disagreement-claimed"] == "1/3"
     stray = words(typeset(checked("stray-lamp")))
     assert "$b$ is not zero but" in stray
-    assert "$g$ divides it exactly $2$ times" in stray and "not zero but" in stray
+    assert "$g$ divides it exactly twice" in stray and "not zero but" in stray
 
 
 def test_a_quadratic_residue_polynomial_stands_between_two_squares() -> None:
@@ -642,7 +644,7 @@ def test_the_obstructions_come_shortest_first_and_only_one_is_the_first() -> Non
     text = words(typeset(checked("every-trouble")))
     assert text.count("An obstruction over the rational numbers") == 1
     assert text.count("A further obstruction") == 2
-    assert "A second, independent refutation: the counter-prime $3$" in text
+    assert "A separate refutation: the counter-prime~$3$" in text
 
 
 def test_a_refutation_without_printed_obstruction_rests_on_the_prime() -> None:
@@ -650,8 +652,8 @@ def test_a_refutation_without_printed_obstruction_rests_on_the_prime() -> None:
     item = certify(LONG, id="long").checked
     proof = item.certificate.proof
     assert isinstance(proof, NoAlgebraicSolution)
-    second = "A second, independent refutation: the counter-prime" in words(typeset(item))
-    assert second == bool(proof.obstructions)
+    separate = "A separate refutation: the counter-prime" in words(typeset(item))
+    assert separate == bool(proof.obstructions)
 
 
 @pytest.mark.parametrize(
@@ -671,7 +673,7 @@ def test_many_smaller_primes_are_joined_by_and() -> None:
     """y' = 30030*y passes until 17: all smaller primes have p-curvature zero."""
     text = words(typeset(certify("y' = 30030*y", id="slow").checked))
     assert "at $2$, $3$, $5$, $7$, $11$ and $13$ the $p$-curvature is zero." in text
-    assert "the counter-prime $17$" in text
+    assert "the counter-prime~$17$" in text
 
 
 def test_only_what_is_used_is_cited() -> None:
@@ -720,6 +722,173 @@ def test_too_many_bases_are_not_listed_and_keep_their_signs_apart() -> None:
     text = words(typeset(item))
     assert "too many to be listed" in text and "\\certgenstep{Step 1}{by machine}" in text
     assert "\\prod_{n_i>0} v_i^{n_i}" in text and "\\prod_{n_i<0} v_i^{-n_i}" in text
+
+
+# --------------------------------------------------------------------------
+# what a referee found
+
+
+def test_a_refutation_says_first_that_the_fraction_is_in_lowest_terms() -> None:
+    """Poles and roots of b are the same only then: (x^2-2) + (x+1)*(x+1) = 1 modulo 2."""
+    text = words(typeset(checked("hasty-claim")))
+    assert "\\certgenstep{Lowest terms}{by hand} $a/b$ is in lowest terms" in text
+    assert "the prime $2$ does not divide the leading coefficient of $b$" in text
+    assert formulas(text)["lowest-terms-right"] == "x + 1"
+    assert text.index("Lowest terms") < text.index("certgenheading{Criterion}")
+    assert "by the criterion, $a/b$ being in lowest terms, $b$ has simple roots" in text
+    x = sympy.Poly("x", modulus=2)
+    assert (x**2 - 2) + (x + 1) * (x + 1) == sympy.Poly(1, x.gen, modulus=2)
+
+
+@pytest.mark.parametrize(
+    ("equation", "how", "reason"),
+    [
+        ("y' = y/(x^3-x-1)", "by sight", "$a$ is a constant other than $0$, so $a/b$"),
+        ("y' = (x+1)*y", "by sight", "$b$ is a constant, so $a/b$ is in lowest terms."),
+        (LONG, "by machine", "some combination of $b$ and $a$ is $1$"),
+    ],
+)
+def test_the_other_reasons_for_lowest_terms(equation: str, how: str, reason: str) -> None:
+    """A constant on either side is seen; a large pair is left to the machine."""
+    text = words(typeset(certify(equation, id="some").checked))
+    assert f"\\certgenstep{{Lowest terms}}{{{how}}}" in text and reason in text
+
+
+@pytest.mark.parametrize("item", _all_checked(), ids=lambda i: i.certificate.claim.id)
+def test_every_refutation_and_nothing_else_has_the_step_of_lowest_terms(
+    item: CheckedCertificate,
+) -> None:
+    """Once in a refutation, and its Bezout line holds modulo the prime of the file."""
+    text = words(typeset(item))
+    proof, claim = item.certificate.proof, item.certificate.claim
+    refutes = isinstance(proof, NoAlgebraicSolution)
+    assert text.count("\\certgenstep{Lowest terms}") == int(refutes)
+    assert "by the criterion $b$ has" not in text
+    names = [key for key, _ in printed_formulas(text)]
+    assert names.count("lowest-terms-left") <= 1 and names.count("lowest-terms-right") <= 1
+    if isinstance(proof, NoAlgebraicSolution) and "lowest-terms-right" in names:
+        p, printed = proof.lowest_terms_prime, _read_back(item)
+        assert claim.equation.denominator.numerators[-1] % p
+        step = text[text.index("Lowest terms"):text.index("{Criterion}")]
+        written = "${}+{}$" in step or "certgenbreak ${} +{}$" in step
+        left = printed.get("lowest-terms-left", Polynomial.from_integers([int(written)]))
+        total = poly(left, p) * poly(claim.equation.denominator, p)
+        total += poly(printed["lowest-terms-right"], p) * poly(claim.equation.numerator, p)
+        assert total == sympy.Poly(1, X, modulus=p)
+
+
+def test_a_wrong_closed_form_of_the_constants_is_not_called_a_constant() -> None:
+    """y' = 0 with the square root of x^2 - 1: the residue 1/2 at 1 refutes."""
+    item = certify("y' = 0", id="still", solution="(x^2-1)^(1/2)").checked
+    assert item.certificate.verdict == "refuted"
+    text = words(typeset(item))
+    assert "closed form of the author is a constant" not in text
+    assert formulas(text)["disagreement-claimed"] == "1/2"
+    right = certify("y' = 0", id="still", solution="3^(0)").checked
+    assert "closed form" in words(typeset(right))
+
+
+def test_a_pole_of_the_closed_form_alone_is_tested_against_the_bases() -> None:
+    """b = 2x is 0 modulo 2, so nothing is said of b modulo a prime, but of the base x."""
+    one = words(typeset(certify("y'=y/(2*x)", id="one", solution="(x-1)^(1/2)").checked))
+    assert "$b$ is not zero but \\certgenformula{disagreement-b}{2} there" in one
+    two = words(typeset(certify("y'=y/(2*x)", id="two",
+                                solution="x^(1/2)*(x^2-2)^(1/2)").checked))
+    assert "for $g$ and the base below,{} which is $b$ up to a constant (Step 2)" in two
+    for text in (one, two):
+        assert "$b$ and $g$" not in text and "$g$ and $b$" not in text
+
+
+def test_no_refutation_is_counted_or_called_independent() -> None:
+    """After two obstructions the next is no second one; the last shares (a) and (b)."""
+    for item in (checked("every-trouble"), checked("hasty-claim")):
+        text = words(typeset(item))
+        assert "independent" not in text and "A second" not in text and "A third" not in text
+        assert "A separate refutation: the counter-prime" in text
+    assert "With (a) and (b) as before, this replaces (c)." in text
+
+
+@pytest.mark.parametrize(
+    ("name", "sentence"),
+    [
+        ("three-currents", "and neither $0$ nor $1$ is a root"),
+        ("hasty-claim", "and none of $0$, $1$ and $2$ is a root"),
+    ],
+)
+def test_the_residue_classes_without_a_root_are_named(name: str, sentence: str) -> None:
+    """x^3 + x + 1 modulo 2, x^2 + 1 modulo 3."""
+    assert sentence in words(typeset(checked(name)))
+
+
+def test_the_eisenstein_theorem_speaks_of_rational_coefficients() -> None:
+    """Over C it is false: a constant pi has no such L."""
+    text = words(typeset(checked("mixed-knots")))
+    assert "every algebraic power series with rational coefficients has such" in text
+
+
+def test_a_refuted_closed_form_does_not_rest_on_the_degree() -> None:
+    """The residues refute; Step 4 is for the degree of the actual solutions."""
+    text = words(typeset(checked("misprint")))
+    assert "the refutation needs the rules of differentiation, nothing else; that" in text
+    assert "the actual solutions is exactly $2$ rests on the argument in Step 4" in text
+
+
+def test_twice_and_the_place_of_a_pole() -> None:
+    """A double pole at 0: twice, not 2 times; one at the roots of x^2+1 has no number."""
+    text = words(typeset(checked("whirlpool")))
+    assert "pole of order $2$ at \\certgenformula{multiple-pole-root-1}{0}, the root" in text
+    assert "exactly twice (see below)" in text and "any more" not in text
+    other = words(typeset(certify("(x^2+1)^3*y' = y", id="round").checked))
+    assert "at every root of" in other and "exactly $3$ times (see below)" in other
+
+
+def test_the_page_says_where_simple_roots_come_from() -> None:
+    """Residues are a/b' at simple roots alone, and orders are exact if S has simple roots."""
+    whole = words(typeset(checked("hasty-claim")))
+    assert "which is $b$ and has simple roots by (a) below" in whole
+    mixed = words(typeset(certify("(x^2-2)*(x-1)^2*y' = y", id="mixed").checked))
+    assert "simple ones of $b$ by the squarefree part and (a) below" in mixed
+    assert "that the roots of $S$ are simple is shown in (a) below" in mixed
+
+
+def test_a_strip_of_bad_primes_alone_is_left_out() -> None:
+    """It would show nothing."""
+    bad = [PrimeStatus(p=p, status="bad") for p in (2, 3, 5)]
+    assert build_strip(bad).rows == ()
+    assert len(build_strip([*bad, PrimeStatus(p=7, status="zero")]).rows) == 1
+
+
+def test_the_minimal_polynomial_is_written_like_the_solution() -> None:
+    """Nine long bases: v_1, v_2, ... in Step 3 and in Step 4."""
+    logs = " + ".join(f"1/{k}*(7*x^6 + {k})/(x^7 + {k}*x + 10000000000000000000000000003)"
+                      for k in range(2, 11))
+    item = certify(f"y' = ({logs})*y", id="nine").checked
+    text = words(typeset(item))
+    minimal = text[text.index("the difference of the two sides of"):]
+    assert "v_{9}^{252}" in minimal[:600] and "x^{7}" not in minimal[:600]
+
+
+def test_superfluous_marks_are_gone() -> None:
+    """No (4(t)), no exponent 1 at p = 2, no sum that repeats the number before it."""
+    lamp = words(typeset(certify("y'=y/(2*x)", id="lamp").checked))
+    assert "1 + 4{}$\\certgenformula{expansion-1}{t}.}" in lamp
+    assert "^{1}" not in words(typeset(checked("three-currents")))
+    rational = words(typeset(certify("y'=-(2*x+3)/(x^2+3*x+1)*y", id="whole").checked))
+    assert "$N\\,a ={}$\\certgenformula{spot-a}{-7}${} = 1\\cdot (-7)$." in rational
+
+
+def test_a_last_short_term_stays_on_its_line() -> None:
+    """No place to break before + 1, also where it is + a = 1."""
+    text = typeset(certify("y' = 1/(x^3-x-1)*y", id="short").checked)
+    assert not re.search(r"certgenbreak\s+[+-] [0-9a-z]{1,3}\}", text)
+    assert "\\certgenbreak ${}\\equiv" not in words(text)
+
+
+def test_where_no_spot_check_exists_the_page_says_so() -> None:
+    """Degree 60 modulo p is for the machine; a small one is not."""
+    item = certify("(x^60 + 2*x^7 + 3)*y' = (x^11 + 3)*y", id="large").checked
+    assert "There is no short spot check for (a), (b) and (c)." in words(typeset(item))
+    assert "no short spot check" not in words(typeset(checked("hasty-claim")))
 
 
 # --------------------------------------------------------------------------

@@ -78,9 +78,9 @@ def test_without_an_id_the_claim_gets_one_from_its_canonical_form() -> None:
 @pytest.mark.parametrize(
     ("keys", "message"),
     [
-        ({"equation": "y' = 1/0*y"}, "line 1, column 7: equation: division by zero"),
-        ({"equation": "y' = y", "solution": "x^"}, "line 1, column 3: solution: "),
-        ({"equation": "y' = y", "solution": "z"}, "solution: unknown name 'z'"),
+        ({"equation": "y' = 1/0*y"}, "equation, line 1, column 7: division by zero"),
+        ({"equation": "y' = y", "solution": "x^"}, "solution, line 1, column 3: "),
+        ({"equation": "y' = y", "solution": "z"}, "column 1: unknown name 'z'"),
         ({"equation": "y' = y", "id": "../x"}, "the id '../x' is not valid"),
         ({"equation": "y' = y", "asserts": "true"}, "asserts is 'true'"),
         ({"equation": "y' = y", "subject": "all"}, "subject is 'all'"),
@@ -161,7 +161,7 @@ def test_an_expression_in_a_file_is_refused_with_claim_key_and_place(tmp_path: P
     text = CLAIM + "[[claim]]\nid = 'b'\nequation = \"y' = y\"\nsolution = \"x +* 2\""
     error = refused(tmp_path, text)
     assert isinstance(error, ExpressionError)
-    assert "claims.toml: claim 2 ('b'): solution: " in str(error)
+    assert "claims.toml: claim 2 ('b'): solution, line 1, column 4: " in str(error)
     assert (error.line, error.column) == (1, 4)
 
 

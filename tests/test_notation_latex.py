@@ -64,7 +64,7 @@ def test_the_letters_of_latex_are_found() -> None:
 @pytest.mark.parametrize("name", sorted(GREEK_LETTERS))
 def test_every_greek_letter_is_a_letter(name: str) -> None:
     """As function and as variable, in both notations."""
-    other = "xi" if name != "xi" else "eta"
+    other = "xi" if name != "xi" else "zeta"
     for text in (f"\\{name}' = \\{other} \\{name}", f"{name}' = {other}*{name}"):
         assert read_equation(text).letters == Letters(variable=other, function=name)
     text = f"\\frac{{d\\{other}}}{{d\\{name}}} = \\{name}\\{other}"
@@ -135,6 +135,50 @@ def test_what_cannot_be_read_is_refused_at_its_place(
     error = failure(read_equation, text)
     assert message in str(error), str(error)
     assert (error.line, error.column) == (1, column), str(error)
+
+
+@pytest.mark.parametrize(
+    ("text", "message"),
+    [
+        (r"y' = 1/{x}y", "a product without a sign after a division is ambiguous"),
+        (r"y' = {12}{3} y", "two numbers side by side"),
+        (r"y' = x{3} y", "a number after a factor"),
+        (r"y' = 2{\frac12} y", "a number before a fraction of numbers is ambiguous"),
+        (r"y' = 1/{2x} \cdot y", "braces hold together"),
+        (r"y' = 2{x+1} y", "braces hold together"),
+        (r"y' = x{-1} y", "braces hold together"),
+        (r"y' = {1/2} x y", "braces hold together"),
+        (r"y' = {2x}^2 y", "braces hold together"),
+        (r"y' = {-x}^2 y", "braces hold together"),
+        (r"y' = {x^2}^3 y", "braces hold together"),
+        (r"y' - {y+y} = 0", "braces hold together"),
+        (r"y' = {(x+1)(x-1)}^2 y", "braces hold together"),
+        (r"y' = \frac{1}{2}^2 y", "a power of a fraction without parentheses"),
+        (r"{y'}(x) = y", "the argument of y, or a product"),
+        (r"y' = {y}(x+1)", "the argument of y, or a product"),
+        (r"y' = y^{(1)}", "a power or a derivative"),
+    ],
+)
+def test_what_is_printed_otherwise_is_refused(text: str, message: str) -> None:
+    """TeX prints no braces: 2{x+1} looks like 2x+1, and {12}{3} like 123."""
+    assert message in str(failure(read_equation, text))
+
+
+@pytest.mark.parametrize(
+    ("text", "expected"),
+    [
+        (r"\frac{dy}{dx}(x) = y(x)", "(1)*y' = (1)*y"),
+        (r"\frac{dy}{dx}\left(x\right) = \frac{y}{x}", "(x)*y' = (1)*y"),
+        (r"{\frac {3\,{x}^{2}-1}{2\,{x}^{3}-2\,x}}y = y'", CUBIC),
+        (r"y' = {\left(x+1\right)}^{2} y", "(1)*y' = (x^2 + 2*x + 1)*y"),
+        (r"y' = {-x}y + {x^2}{y}", "(1)*y' = (x^2 - x)*y"),
+        (r"y' = \frac{{x+1}}{{x-1}} {y}", "(x - 1)*y' = (x + 1)*y"),
+        (r"{y'} - {y/x} = 0", "(x)*y' = (1)*y"),
+    ],
+)
+def test_braces_that_change_nothing_are_read(text: str, expected: str) -> None:
+    """The formula as TeX prints it has the same meaning."""
+    assert str(read_equation(text).equation) == expected
 
 
 def test_the_place_counts_lines_of_latex() -> None:

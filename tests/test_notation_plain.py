@@ -83,7 +83,7 @@ def test_every_usual_form_of_an_equation_is_read(text: str, expected: str) -> No
     ("text", "variable", "function"),
     [
         ("y' = 0", "x", "y"), ("x' = 0", "t", "x"), ("F'(z) = F(z)", "z", "F"),
-        ("dphi/dt = phi", "t", "phi"), ("u' = u/w", "w", "u"), ("Dy = y*s", "s", "y"),
+        ("dphi/dt = phi", "t", "phi"), ("u' = u/v", "v", "u"), ("Dy = y*t", "t", "y"),
         ("D' = D*x", "x", "D"), ("e' = x*e", "x", "e"), ("Phi' = theta*Phi", "theta", "Phi"),
     ],
 )  # fmt: skip
@@ -119,7 +119,7 @@ def test_the_echo_is_fully_parenthesised(text: str, echo: str) -> None:
     assert read_equation(echo, letters=read.letters).equation == read.equation
 
 
-@pytest.mark.parametrize("letter", ["a", "k", "n", "C", "alpha", "lambda"])
+@pytest.mark.parametrize("letter", ["a", "k", "n", "q", "r", "s", "C", "alpha", "lambda"])
 def test_a_letter_that_may_be_a_constant_is_not_taken_for_the_variable(letter: str) -> None:
     """In y' = a*y the letter a is an error with its place, unless y(a) or dy/da says it."""
     error = failure(read_equation, f"y' = {letter}*y")
@@ -127,6 +127,17 @@ def test_a_letter_that_may_be_a_constant_is_not_taken_for_the_variable(letter: s
     assert error.hint is not None and f"y({letter})" in error.hint
     for form in (f"y'({letter}) = {letter}*y", f"dy/d{letter} = {letter}*y"):
         assert read_equation(form).letters == Letters(variable=letter)
+
+
+@pytest.mark.parametrize("text", [
+    "y' = y/(2x).", "y' = y/(2x) ,", "y'/y = 1/(2x);", r"y'(x) = \frac{1}{2x}\,y(x).",
+    r"$y'(x) = \frac{1}{2x}\,y(x),$", r"\[ y' = \frac{y}{2x}\,. \]", r"y' = \frac{1}{2x} y\,",
+])  # fmt: skip
+def test_the_punctuation_that_ends_a_display_is_left_out(text: str) -> None:
+    """As it stands in a paper: one full stop, comma or semicolon at the end."""
+    assert str(read_equation(text).equation) == "(2*x)*y' = (1)*y"
+    assert read_closed_form("sqrt(x),", Letters()) == read_closed_form("sqrt(x)", Letters())
+    assert failure(read_equation, "y' = y/(2x)..").column == 12
 
 
 # -- random equations in many forms
@@ -249,7 +260,7 @@ def test_expressions_have_the_value_that_python_arithmetic_gives(text: str) -> N
         ("y' = sqrt(x)*y", 6, "only rational functions"),
         ("y' = sqrt x*y", 11, "unexpected 'x'"),
         ("y' = 0.1*y", 7, "a decimal point is not read"),
-        ("y' = y/x.", 9, "unexpected character '.'"),
+        ("y' = y/x. y", 9, "unexpected character '.'"),
         ("y' = x_1*y", 7, "unexpected character '_'"),
         ("y' = x'*y", 6, "two candidates for the unknown"),
         ("y' = 1e5*y", 7, "scientific notation is not read"),
@@ -266,6 +277,7 @@ def test_expressions_have_the_value_that_python_arithmetic_gives(text: str) -> N
         ("y\u2032 = y", 2, "write y' with the ASCII apostrophe"),
         ("y' = \u03b1y", 6, "write alpha"),
         ("y' = \u0661y", 6, "write the digits 0-9"),
+        ("y' = \frac{1}{2} y", 6, "is it a \\f of LaTeX in double quotes?"),
         ("y' = \u200by", 6, "remove this invisible control character"),
         ("y' = \u6570y", 6, "only ASCII is read"),
         ("y' = abcdefghijklmnopqrstuvwxyzabcdefghijklmnopqrstuvwxyz", 6, "unknown name"),
@@ -278,6 +290,62 @@ def test_what_cannot_be_read_is_refused_at_its_place(
     error = failure(read_equation, text)
     assert (error.line, error.column, error.status) == (1, column, 2)
     assert message in str(error)
+
+
+@pytest.mark.parametrize(
+    ("text", "column", "message"),
+    [
+        ("y'[x] = y", 3, "the argument of y, or a product"),
+        ("(y')(x) = y", 5, "the argument of y, or a product"),
+        ("dy/dx[x] = y", 6, "the argument of y, or a product"),
+        ("D y x = y", 5, "it is not clear what is differentiated"),
+        ("d/dx y/x = y", 7, "it is not clear what is differentiated"),
+        ("d/dx y*x = y", 7, "it is not clear what is differentiated"),
+        ("y' = y^(1)", 6, "a power or a derivative"),
+        ("y' = x^-1/2*y", 10, "a division right after a power is ambiguous"),
+        ("y' = sqrt[3](x)*y", 10, "a cube root is x^(1/3)"),
+    ],
+)
+def test_an_equation_that_reads_in_two_ways_is_refused(
+    text: str, column: int, message: str
+) -> None:
+    """Application or product, D(y*x) or D(y)*x, a root or a division: never guessed."""
+    error = failure(read_equation, text)
+    assert message in str(error) and error.column == column
+
+
+@pytest.mark.parametrize(
+    ("text", "expected"),
+    [
+        ("dy/dx(x) = y(x)", "(1)*y' = (1)*y"),
+        ("dy/dx(x+1) = y", "(x + 1)*y' = (1)*y"),
+        ("y'(x)(x+1) = y(x)(x)", "(x + 1)*y' = (x)*y"),
+        ("(y)(x+1) = y'", "(1)*y' = (x + 1)*y"),
+        ("D(y)*x = y", "(x)*y' = (1)*y"),
+        ("(x^-1)/2*y = y'", "(2*x)*y' = (1)*y"),
+        ("y' = x^2/3*y", "(3)*y' = (x^2)*y"),
+    ],
+)
+def test_the_neighbours_of_what_is_refused_are_read(text: str, expected: str) -> None:
+    """dy/dx(x) is the derivative at x and no product with x."""
+    assert str(read_equation(text).equation) == expected
+
+
+@pytest.mark.parametrize(
+    ("text", "message"),
+    [
+        ("sqrt[3](x)", "a cube root is x^(1/3)"),
+        ("C(x)", "'C' may be a function here"),
+        ("x^1/2", "a division right after a power is ambiguous"),
+        ("(x+1)^3/2", "a division right after a power is ambiguous"),
+        ("y x x x = 1", "unknown name 'y'"),
+        ("y[x] = x", "unknown name 'y'"),
+    ],
+)
+def test_a_closed_form_that_reads_in_two_ways_is_refused(text: str, message: str) -> None:
+    """None of them is a constant times a power by accident; (x^3)/2 and C*x are."""
+    assert message in str(failure(lambda t: read_closed_form(t, Letters()), text))
+    assert closed_form("y(x) = C*(x^3)/2") == {"x": "3"}
 
 
 def test_the_place_counts_lines() -> None:

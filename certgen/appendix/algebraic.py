@@ -115,6 +115,7 @@ def build_algebraic_parts(
         term.factor.degree == 1 for term in proof.partial_fractions
     )
     symbolic = Latex(f"${_symbolic(sym, exponents, f'{sym.rho}_i')}$")
+    written_out = printer.product(proof.solution)
     squarefree = _squarefree(printer, sym, claim, facts)
     written = build_written(printer, facts)
     return Algebraic(
@@ -138,10 +139,10 @@ def build_algebraic_parts(
         written=written,
         by_hand=written is not None and is_by_hand(facts),
         spot=build_spot(printer, facts),
-        solution=printer.product(proof.solution) or symbolic,
-        numerator=printer.product(proof.minimal_polynomial.numerator)
+        solution=written_out or symbolic,
+        numerator=_side(printer, proof.minimal_polynomial.numerator, written_out)
         or Latex(f"${_symbolic(sym, top, f'{sym.n}_i', f'_{{{sym.n}_i>0}}')}$"),
-        denominator=printer.product(proof.minimal_polynomial.denominator)
+        denominator=_side(printer, proof.minimal_polynomial.denominator, written_out)
         or Latex(f"${_symbolic(sym, bottom, f'-{sym.n}_i', f'_{{{sym.n}_i<0}}')}$"),
         has_numerator=any(top),
         has_denominator=any(bottom),
@@ -176,6 +177,13 @@ def _symbolic(
         return symbolic_product(sym.v, exponents, exponent)
     text = rf"\prod{condition} {sym.v}_i^{{{exponent}}}"
     return text.replace("_i", f"_{sym.i}")
+
+
+def _side(
+    printer: Printer, side: Sequence[Power], written_out: Latex | None
+) -> Latex | None:
+    """A side of the minimal equation, in v_i wherever the solution is."""
+    return None if written_out is None else printer.product(side)
 
 
 def _integer_powers(bases: Sequence[Power], side: Sequence[Power]) -> list[Fraction]:

@@ -33,6 +33,11 @@ class BezoutShown:
     point: Latex
     values: Latex | None
 
+    @property
+    def has_numbers(self) -> bool:
+        """Whether anything is printed that a reader can recompute."""
+        return self.line is not None or self.values is not None
+
 
 def build_bezout(
     printer: Printer,
@@ -69,7 +74,8 @@ def _line(
         for place, side, symbol in zip(("left", "right"), sides, names, strict=True)
         if not side.is_zero
     ]
-    return Latex("\\certgenbreak ${}+{}$".join(terms) + r"\certgenbreak ${}\equiv 1$")
+    plus = "${}+{}$" if sides[1].numerators == (1,) else r"\certgenbreak ${}+{}$"
+    return Latex(plus.join(terms) + r"${}\equiv 1$")
 
 
 def _term(text: str, side: Polynomial, symbol: str) -> str:

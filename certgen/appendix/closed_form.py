@@ -31,6 +31,7 @@ class Order:
     order: Latex
     exponent: Latex
     simple: bool
+    twice: bool
     slope: Latex | None
 
 
@@ -149,6 +150,7 @@ def _orders(
             order=integer(m),
             exponent=printer.value(f"claimed-exponent-{k}", power.exponent),
             simple=m == 1,
+            twice=m == 2,
             slope=None if root is None or m > 1 else _small_value(
                 printer, f"claimed-slope-{k}", value_at(derivative(power.base), root)
             ),

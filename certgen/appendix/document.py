@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import os
+import shutil
 import subprocess
 import tempfile
 from pathlib import Path
@@ -39,10 +40,21 @@ def build_pdf(tex: str, out: Path) -> None:
     its own tree.  Raises FileError (pdflatex missing, `out` not writable),
     LimitError (too slow) and DefectError (the document does not compile).
     """
+    require_pdflatex()
     with tempfile.TemporaryDirectory(prefix="certgen-") as folder:
         Path(folder, "appendix.tex").write_text(tex, encoding="ascii")
         _run(folder)
         write_bytes_atomically(out, Path(folder, "appendix.pdf").read_bytes())
+
+
+def require_pdflatex() -> None:
+    """Raise FileError, with what to install, where pdflatex is missing."""
+    if shutil.which("pdflatex") is None:
+        raise FileError(
+            "pdflatex is missing; install a TeX distribution (on Debian: "
+            "texlive-latex-recommended, texlive-fonts-recommended and lmodern), or "
+            "go without the PDF"
+        )
 
 
 def _run(folder: str) -> None:
@@ -51,12 +63,6 @@ def _run(folder: str) -> None:
             _COMMAND, cwd=folder, env=_environment(), timeout=SECONDS_LIMIT,
             stdin=subprocess.DEVNULL, capture_output=True, check=False,
         )  # fmt: skip
-    except FileNotFoundError:
-        raise FileError(
-            "pdflatex is missing; install a TeX distribution (on Debian: "
-            "texlive-latex-recommended, texlive-fonts-recommended and lmodern), or "
-            "go without the PDF"
-        ) from None
     except subprocess.TimeoutExpired:
         raise LimitError(
             f"pdflatex took more than {SECONDS_LIMIT} seconds and was stopped"

@@ -26,6 +26,8 @@ __all__ = [
     "TEXT_LIMIT",
     "WRITTEN_LINES",
     "Printer",
+    "cell_width",
+    "in_product",
     "is_long",
     "is_long_exponent",
     "is_omitted",
@@ -61,6 +63,7 @@ EXPONENT_DIGITS = 20
 INLINE = 36
 """Formulas stand in the sentence up to this many characters of strict notation."""
 
+_SHORT_END = re.compile(r" ?\\certgenbreak (?=[+-] [0-9a-z]{1,3}$)")
 _BREAK = r"\certgenhere "
 
 
@@ -86,7 +89,7 @@ class Printer:
         """Return the tagged formula, or its size when it is beyond the limits."""
         if is_omitted(value):
             return self._omitted(value)
-        return _tag(name, polynomial(value, letter or self.letter))
+        return _tag(name, _keep_end(polynomial(value, letter or self.letter)))
 
     def power(self, name: str, base: Polynomial, exponent: int) -> Latex:
         """Return base^exponent as one tagged formula, or the size of the base."""
@@ -138,6 +141,17 @@ def listing(items: Sequence[str]) -> Latex:
     if len(items) < 2:
         return Latex("".join(items))
     return Latex(", ".join(items[:-1]) + " and " + items[-1])
+
+
+def in_product(text: Latex, value: Polynomial) -> Latex:
+    """Return the printed `value` as a factor: sums and negative ones in parentheses."""
+    plain = sum(1 for c in value.numerators if c) == 1 and value.numerators[-1] > 0
+    return text if plain else Latex(f"$(${text}$)$")
+
+
+def _keep_end(text: Latex) -> Latex:
+    """Without the break before a last short term, which would stand alone on a line."""
+    return Latex(_SHORT_END.sub(" ", text))
 
 
 def _tag(name: str, content: str) -> Latex:

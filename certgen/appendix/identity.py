@@ -28,6 +28,7 @@ BY_HAND_BASES = 4
 BY_HAND_DIGITS = 6
 SENTENCE_ROWS = 2
 SENTENCE_DIGITS = 6
+SHORT = 16
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -54,7 +55,7 @@ class SpotRow:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Spot:
-    """The identities at one point; `product` and `sum` are not evaluated."""
+    """The identities at one point; `product` and `sum`, not evaluated, begin with `=`."""
 
     point: Latex
     a: Latex
@@ -119,16 +120,21 @@ def build_spot(printer: Printer, facts: AlgebraicFacts) -> Spot | None:
     a = printer.value("spot-a", spot.a)
     return Spot(
         point=printer.value("spot-point", spot.point),
-        a=Latex(f"$(${a}$)$") if spot.a < 0 else a,
+        a=Latex(f"$(${a}$)$") if spot.a < 0 and facts.degree > 1 else a,
         b=printer.value("spot-b", spot.b),
-        product=Latex(
+        product=_equals(
             beta + r"\certgenbreak\cdot ".join(signed_factor(v) for v in spot.bases)
         ),
-        sum=Latex(f"{beta}({total})" if beta and many else f"{beta}{total}"),
+        sum=_equals(f"{beta}({total})" if beta and many else f"{beta}{total}"),
         tabular=len(spot.bases) > SENTENCE_ROWS or digits > SENTENCE_DIGITS,
         rows=_rows(printer, spot),
         width=Latex(f"{max(4.0, 0.52 * digits + 1.2):.2f}em"),
     )
+
+
+def _equals(text: str) -> Latex:
+    """= text, on a new line where need be, but not for a few characters."""
+    return Latex(f" = {text}" if len(text) <= SHORT else rf"\certgenbreak = {text}")
 
 
 def _is_small(facts: AlgebraicFacts, spot: IdentitySpot) -> bool:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from math import prod
 
-from certgen.appendix.formulas import Printer, lines_of
+from certgen.appendix.formulas import Printer, in_product, lines_of
 from certgen.appendix.symbols import Symbols
 from certgen.appendix.values import fits, quotient_of, shifted, value_at
 from certgen.certificate import AlgebraicSolution, Eisenstein
@@ -22,12 +22,16 @@ SMALL = 1000
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Expansion:
-    """v_i(x0 + L*t) = value * (1 + scale * series), the series a polynomial in t."""
+    """v_i(x0 + L*t) = value * (1 + scale * series), the series a polynomial in t.
+
+    Where the value is not 1, `value` ends with a parenthesis that `close` closes.
+    """
 
     index: Latex
     value: Latex
     scale: Latex
     series: Latex
+    close: Latex
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -72,12 +76,39 @@ def _expansions(
     return tuple(
         Expansion(
             index=integer(k),
-            value=Latex("" if start == 1 else rf"{integer(start)}\certgenbreak\cdot "),
-            scale=Latex("" if scale == 1 else integer(scale)),
-            series=printer.polynomial(f"expansion-{k}", series, str(sym.t)),
+            value=_value(start),
+            scale=_scale(scale, series),
+            series=_series(printer.polynomial(f"expansion-{k}", series, str(sym.t)),
+                           scale, series),
+            close=Latex("" if start == 1 else "$)$"),
         )
         for k, (start, scale, series) in enumerate(parts, 1)
     )
+
+
+def _value(start: int) -> Latex:
+    if start in (1, -1):
+        return Latex("" if start == 1 else "-(")
+    return Latex(rf"{integer(start)}\certgenbreak (")
+
+
+def _scale(scale: int, series: Polynomial) -> Latex:
+    """The scale as a factor, with a dot before a number."""
+    if scale == 1:
+        return Latex("")
+    dot = r" \cdot " if _is_plain(series) and series.numerators[-1] != 1 else ""
+    return Latex(f"{integer(scale)}{dot}")
+
+
+def _series(text: Latex, scale: int, series: Polynomial) -> Latex:
+    """The series after `1 + scale`; a sum after the scale 1 needs no parentheses."""
+    if scale == 1 and series.numerators[-1] > 0:
+        return text
+    return in_product(text, series)
+
+
+def _is_plain(series: Polynomial) -> bool:
+    return sum(1 for c in series.numerators if c) == 1 and series.numerators[-1] > 0
 
 
 def _parts(power: Power, value: Eisenstein) -> tuple[int, int, Polynomial]:

@@ -9,6 +9,7 @@ from certgen.appendix.formulas import (
     INLINE,
     LINE,
     Printer,
+    in_product,
     is_long,
     listing,
     show,
@@ -62,7 +63,9 @@ class MultiplePoleShown:
     show: Latex
     factor: Latex
     order: Latex
-    one_root: bool
+    twice: bool
+    times: Latex
+    root: Latex | None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -158,8 +161,18 @@ def _multiple_pole(printer: Printer, k: int, item: MultiplePole) -> MultiplePole
         show=show(item.factor),
         factor=printer.polynomial(f"multiple-pole-{k}", item.factor),
         order=integer(item.order),
-        one_root=item.factor.degree == 1,
+        twice=item.order == 2,
+        times=Latex(f"${integer(item.order)}$ times"),
+        root=_root(printer, k, item.factor),
     )
+
+
+def _root(printer: Printer, k: int, factor: Polynomial) -> Latex | None:
+    """The root of a linear factor, where it is short."""
+    if factor.degree != 1:
+        return None
+    root = -factor.coefficient(0) / factor.coefficient(1)
+    return printer.value(f"multiple-pole-root-{k}", root) if fits(root) else None
 
 
 def _irrational(
@@ -195,7 +208,9 @@ def _irrational(
             "inline" if len(discriminant_sum) <= 2 * INLINE else "display"
         ),
         form=form,
-        cofactor=printer.polynomial(f"residue-cofactor-{k}", facts.cofactor)
+        cofactor=in_product(
+            printer.polynomial(f"residue-cofactor-{k}", facts.cofactor), facts.cofactor
+        )
         if short else None,
         spot=_spot(printer, k, facts.spot) if form is not None else None,
         quadratic=disc is not None,

@@ -13,6 +13,7 @@ from certgen.appendix.formulas import (
     Printer,
     is_long,
     join_numbers,
+    listing,
     show,
     signed_factor,
 )
@@ -65,6 +66,7 @@ class CounterPrimePart:
     long_reduced: bool
     show_factor: Latex
     factor_is_denominator: bool
+    factor_is_multiple: bool
     long_residue: bool
     numerator: Latex
     denominator: Latex
@@ -79,7 +81,10 @@ class CounterPrimePart:
     by_hand: bool
     irreducible: bool
     irreducible_by_hand: bool
+    no_root: Latex
+    unchecked: Latex | None
     last_residue_class: Latex
+    power: Latex
     p_curvature: Latex | None
     expansion: Latex | None
     none_smaller: bool
@@ -114,6 +119,7 @@ class Refutation:
     decomposition_by_hand: bool
     factor_count: Latex
     constant_numerator: bool
+    lowest_how: str
     lowest_terms_prime: Latex
     lowest_terms: BezoutShown | None
     obstructions: tuple[ObstructionShown, ...]
@@ -129,22 +135,25 @@ def build_refutation(checked: CheckedCertificate) -> tuple[Head, Refutation]:
         raise DefectError("the facts do not belong to the proof")
     printer, head = printer_of(checked), build_head(checked)
     equation, sym = claim.equation, head.sym
-    parts = build_obstructions(printer, sym, proof, facts)
+    lowest_terms = build_bezout(
+        printer, "lowest-terms", facts.lowest_terms, (sym.b, sym.a),
+        (equation.denominator, equation.numerator),
+    )  # fmt: skip
+    constant = equation.numerator.is_constant or equation.denominator.is_constant
     return head, Refutation(
         beta=signed_factor(facts.beta),
         beta_is_one=facts.beta == 1,
-        constant_denominator=claim.equation.denominator.is_constant,
+        constant_denominator=equation.denominator.is_constant,
         squarefree=all(f.multiplicity == 1 for f in proof.squarefree_decomposition),
         decomposition=_decomposition(printer, proof),
-        decomposition_by_hand=claim.equation.denominator.degree <= HAND_DIVISION,
+        decomposition_by_hand=equation.denominator.degree <= HAND_DIVISION,
         factor_count=integer(len(proof.squarefree_decomposition)),
-        constant_numerator=claim.equation.numerator.is_constant,
+        constant_numerator=equation.numerator.is_constant,
+        lowest_how="by sight" if constant
+        else lowest_terms.how if lowest_terms is not None else "by machine",
         lowest_terms_prime=integer(proof.lowest_terms_prime),
-        obstructions=parts,
-        lowest_terms=build_bezout(
-            printer, "lowest-terms", facts.lowest_terms, (sym.b, sym.a),
-            (equation.denominator, equation.numerator),
-        ),
+        lowest_terms=lowest_terms,
+        obstructions=build_obstructions(printer, sym, proof, facts),
         counter_prime=_counter_prime(printer, head, equation, proof, facts),
         density=_density(proof, facts),
         strip=build_strip(facts.strip),
@@ -190,6 +199,7 @@ def _counter_prime(
     bad = [q.p for q in facts.smaller_primes if q.status == "bad"]
     zero = [q.p for q in facts.smaller_primes if q.status == "zero"]
     expansion = _expansion(reduced, p, proof)
+    by_hand = small and (factor is None or factor.degree <= HAND_DEGREE)
     return CounterPrimePart(
         p=integer(p),
         kind=witness.KIND,
@@ -202,7 +212,8 @@ def _counter_prime(
         leading=integer(leading) if fits(leading) else None,
         long_reduced=is_long(reduced.numerator, reduced.denominator),
         show_factor=show(factor) if factor is not None else Latex("inline"),
-        factor_is_denominator=factor is not None
+        factor_is_denominator=factor == reduced.denominator,
+        factor_is_multiple=factor is not None
         and factor.degree == reduced.denominator.degree,
         long_residue=isinstance(witness, ResidueOutsidePrimeField)
         and is_long(witness.residue, reduced.derivative),
@@ -218,11 +229,15 @@ def _counter_prime(
         if isinstance(witness, ResidueOutsidePrimeField) else None,
         residue_power=printer.polynomial("witness-residue-power", reduced.residue_power)
         if reduced.residue_power is not None else None,
-        by_hand=small and (factor is None or factor.degree <= HAND_DEGREE),
+        by_hand=by_hand,
         irreducible=outside and bool(reduced.factor_is_irreducible),
         irreducible_by_hand=factor is not None and factor.degree <= HAND_DEGREE
         and p <= HAND_PRIME,
+        no_root=_no_root(p),
+        unchecked=_unchecked(by_hand, witness.KIND, bool(reduced.factor_is_irreducible),
+                             degree <= 1 or (goodness is not None and goodness.has_numbers)),
         last_residue_class=integer(p - 1),
+        power=Latex("" if p == 2 else f"^{{{integer(p - 1)}}}"),
         p_curvature=_p_curvature(printer, proof),
         expansion=printer.polynomial("expansion", expansion) if expansion else None,
         none_smaller=not facts.smaller_primes,
@@ -233,6 +248,26 @@ def _counter_prime(
         zero=join_numbers(zero),
         zero_count=len(zero),
     )
+
+
+def _unchecked(by_hand: bool, kind: str, irreducible: bool, good: bool) -> Latex | None:
+    """The steps by machine that have no numbers to check at one point."""
+    outside = kind == ResidueOutsidePrimeField.KIND
+    steps = ["(a)"] if not good else []
+    if not by_hand:
+        steps.append("(b)")
+    if (not by_hand and kind != PolynomialPartModP.KIND) or (outside and not irreducible):
+        steps.append("(c)")
+    return listing(steps) if steps else None
+
+
+def _no_root(p: int) -> Latex:
+    """The residue classes modulo p, as the subject of a denial."""
+    if p == 2:
+        return Latex("neither $0$ nor $1$")
+    if p == 3:
+        return Latex("none of $0$, $1$ and $2$")
+    return Latex(rf"none of $0$, $1$, \ldots, ${integer(p - 1)}$")
 
 
 def _p_curvature(printer: Printer, proof: NoAlgebraicSolution) -> Latex | None:

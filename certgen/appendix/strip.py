@@ -33,14 +33,16 @@ class Strip:
 
 
 def build_strip(primes: Sequence[PrimeStatus]) -> Strip:
-    """Return the strip in its order."""
+    """Return the strip in its order, empty where it would show bad primes alone."""
+    statuses = {prime.status for prime in primes}
+    if statuses == {"bad"}:
+        return Strip(rows=(), has_bad=True, has_zero=False, has_nonzero=False)
     items = [
         StripItem(
             p=integer(prime.p), bad=prime.status == "bad", zero=prime.status == "zero"
         )
         for prime in primes
     ]
-    statuses = {prime.status for prime in primes}
     return Strip(
         rows=tuple(tuple(items[k : k + ROW]) for k in range(0, len(items), ROW)),
         has_bad="bad" in statuses,

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import argparse
 import sys
 from pathlib import Path
 
@@ -9,7 +10,10 @@ from certgen.checker import check
 from certgen.codec import BYTES_LIMIT
 from certgen.errors import CertgenError, LimitError
 
-USAGE = "usage: python -m certgen.checker [--arithmetic plain|flint|both] FILE..."
+STATUSES = """\
+exit status: 0 all accepted, 1 a certificate rejected, 2 unusable input, 3 a limit
+was reached, 4 an unknown version; with several files the first of 2, 1, 4, 3.
+"""
 
 NOTE = (
     "note: the author's text ($.claim.as_written) was not compared with the claim; "
@@ -38,24 +42,30 @@ def _check_file(name: str, arithmetic: str) -> int:
         return 2
     claim, equation = checked.certificate.claim, checked.certificate.claim.equation
     print(f"accepted: {name}: {claim.id}")
-    print(f"  claim:   {claim.subject} of {equation} is {claim.asserts}")
+    which, rest = claim.subject.split(" ", 1)
+    print(f"  claim:   {which} non-zero {rest} of {equation} is {claim.asserts}")
     print(f"  verdict: {checked.certificate.verdict}")
-    print(f"  digest:  {checked.digest} ({checked.arithmetic} arithmetic)")
+    how = "both arithmetics" if arithmetic == "both" else f"{arithmetic} arithmetic"
+    print(f"  digest:  {checked.digest} ({how})")
     return 0
 
 
 def main(arguments: list[str]) -> int:
     """Check each file; return the first of 2, 1, 4, 3 that occurs, else 0."""
-    arithmetic = "plain"
-    if arguments[:1] == ["--arithmetic"] and arguments[1:2]:
-        arithmetic, arguments = arguments[1], arguments[2:]
-    if not arguments or arithmetic not in ("plain", "flint", "both") or arguments[0] in (
-        "-h",
-        "--help",
-    ):
-        print(USAGE, file=sys.stderr)
-        return 0 if arguments[:1] in (["-h"], ["--help"]) else 2
-    statuses = {_check_file(name, arithmetic) for name in arguments}
+    parser = argparse.ArgumentParser(
+        prog="python -m certgen.checker",
+        description="Check stored certificates, without the prover and without reading "
+        "the author's notation.",
+        epilog=STATUSES,
+        formatter_class=argparse.RawDescriptionHelpFormatter,
+        allow_abbrev=False,
+    )
+    parser.add_argument("files", nargs="+", metavar="FILE", help="a stored certificate")
+    parser.add_argument("--arithmetic", choices=("plain", "flint", "both"), default="plain",
+                        help="plain: standard library alone (default); flint: python-flint; "
+                        "both: the two must agree")  # fmt: skip
+    given = parser.parse_args(arguments)
+    statuses = {_check_file(name, given.arithmetic) for name in given.files}
     print(NOTE, file=sys.stderr)
     return next((status for status in (2, 1, 4, 3) if status in statuses), 0)
 

@@ -100,10 +100,8 @@ def check(data: bytes | str, *, arithmetic: ArithmeticName | None = None) -> Che
             "'plain' needs nothing"
         )
     facts = _check_both(stored) if name == "both" else _run(load(name), stored)
-    reject_unless(
-        stored.digest == stored.stored_digest,
-        "digest", "$.digest", stored.digest, stored.stored_digest,
-    )  # fmt: skip
+    if stored.digest != stored.stored_digest:
+        raise RejectedError("digest", "$.digest", stored.digest, stored.stored_digest)
     return CheckedCertificate(_KEY, stored.certificate, stored.digest, name, facts)
 
 

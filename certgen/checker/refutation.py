@@ -141,19 +141,23 @@ def _check_counter_prime(
     reduced = reduce_fraction(a, b, p)
     if isinstance(witness, PolynomialPartModP):
         _witness(
-            has_polynomial_part(reduced), f"{path}.kind", "a polynomial part modulo p"
-        )
+            has_polynomial_part(reduced), f"{path}.kind", "a polynomial part modulo p",
+            "a numerator of lower degree",
+        )  # fmt: skip
     elif isinstance(witness, MultiplePoleModP):
         factor = to_mod(arithmetic, witness.factor, p)
         rest = reduced.denominator.remainder(factor * factor)
-        _witness(rest.degree < 0, f"{path}.factor", "a factor whose square divides b mod p")
+        _witness(
+            rest.degree < 0, f"{path}.factor", "a factor whose square divides b mod p",
+            "a remainder",
+        )  # fmt: skip
     else:
         _check_residue_witness(arithmetic, reduced, p, witness, path)
     return reduced
 
 
-def _witness(condition: bool, path: str, expected: str) -> None:
-    reject_unless(condition, "counter-prime-witness", path, expected, "none")
+def _witness(condition: bool, path: str, expected: str, found: str) -> None:
+    reject_unless(condition, "counter-prime-witness", path, expected, found)
 
 
 def _check_residue_witness(
@@ -169,17 +173,23 @@ def _check_residue_witness(
     numerator, denominator = reduced.numerator, reduced.denominator
     derivative = denominator.derivative()
     _witness(
-        denominator.remainder(g).degree < 0, f"{path}.factor", "a factor of b modulo p"
-    )
+        denominator.remainder(g).degree < 0, f"{path}.factor", "a factor of b modulo p",
+        "a remainder",
+    )  # fmt: skip
     _witness(
-        g.gcd(derivative).degree == 0, f"{path}.factor", "simple poles at its roots"
-    )
+        g.gcd(derivative).degree == 0, f"{path}.factor", "simple poles at its roots",
+        "a multiple pole",
+    )  # fmt: skip
     difference = numerator - s * derivative
     _witness(
-        difference.remainder(g).degree < 0, f"{path}.residue", "a = s*b' modulo the factor"
-    )
+        difference.remainder(g).degree < 0, f"{path}.residue", "a = s*b' modulo the factor",
+        "another residue",
+    )  # fmt: skip
     moved = (s.power(p, g) - s).remainder(g)
-    _witness(moved.degree >= 0, f"{path}.residue", "s^p different from s modulo the factor")
+    _witness(
+        moved.degree >= 0, f"{path}.residue", "s^p different from s modulo the factor",
+        "s^p = s",
+    )  # fmt: skip
 
 
 def _check_smallest(a: ZPoly, b: ZPoly, radical: ZPoly, p: int, path: str) -> None:

@@ -15,9 +15,10 @@ from fractions import Fraction
 from certgen.claim import Letters, Power
 from certgen.errors import ExpressionError
 from certgen.exact.rational_functions import RationalFunction
+from certgen.notation.ambiguous import is_argument
 from certgen.notation.evaluate import Evaluator
 from certgen.notation.parser import Names, Parser
-from certgen.notation.source import Source
+from certgen.notation.source import Source, without_full_stop
 from certgen.notation.tokens import Kind, Token, tokenise
 from certgen.notation.tree import Name, Node, Number, Product, Root, Sum, fold
 from certgen.notation.tree import Power as PowerNode
@@ -42,7 +43,7 @@ def read_closed_form(text: str, letters: Letters) -> tuple[Power, ...]:
     >>> read_closed_form("3*sqrt(4*x)", Letters())
     (Power(base=Polynomial(numerators=(0, 1), denominator=1), exponent=Fraction(1, 2)),)
     """
-    source = Source(text)
+    source = Source(without_full_stop(text))
     if not text.strip():
         raise ExpressionError("the closed form is empty", column=1,
                               hint="write a product, such as x^(1/2)*(x^2-1)^(1/2)")
@@ -59,11 +60,10 @@ def read_closed_form(text: str, letters: Letters) -> tuple[Power, ...]:
 def _without_function(tokens: list[Token], letters: Letters) -> list[Token]:
     """Drop a leading `y =` or `y(x) =`."""
     if tokens[0].kind is Kind.NAME and tokens[0].value == letters.function:
-        for length in (2, 5):
-            if len(tokens) > length and tokens[length - 1].is_operator("="):
-                middle = [t.value for t in tokens[1 : length - 1]]
-                if not middle or middle[1] == letters.variable:
-                    return tokens[length:]
+        applied = is_argument(tokens, 1, letters.variable) and "(" in tokens[1].value
+        length = 5 if applied else 2
+        if len(tokens) > length and tokens[length - 1].is_operator("="):
+            return tokens[length:]
     return tokens
 
 

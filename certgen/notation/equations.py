@@ -15,7 +15,7 @@ from certgen.notation.evaluate import Evaluator
 from certgen.notation.forms import Form, FormEvaluator
 from certgen.notation.letters import find_letters
 from certgen.notation.parser import Names, Parser
-from certgen.notation.source import Source
+from certgen.notation.source import Source, without_full_stop
 from certgen.notation.tokens import tokenise
 from certgen.notation.tree import Node, Sum, echo
 
@@ -42,7 +42,7 @@ def read_equation(text: str, *, letters: Letters | None = None) -> EquationAsRea
     >>> str(read_equation("x y' + y = 0").equation)
     "(x)*y' = (-1)*y"
     """
-    source = Source(text)
+    source = Source(without_full_stop(text))
     if not text.strip():
         raise ExpressionError("the equation is empty", column=1,
                               hint="write an equation, such as y' = 1/(2*x)*y")

@@ -20,7 +20,7 @@ from certgen.notation.tokens import Kind, Token
 __all__ = ["find_letters", "mark_derivatives", "word_place"]
 
 _USUAL_VARIABLES = frozenset(
-    [*"qrstuvwxyzQRSTUVWXYZ", "zeta", "eta", "theta", "xi", "tau", "omega"]
+    [*"tuvxyzTXYZ", "zeta", "theta", "xi"]
 )
 
 _APPLIED = r"(?:\([nd]\))?"

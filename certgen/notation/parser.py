@@ -9,18 +9,16 @@
 
 What people read in two ways is refused: a sign after an operator, a product
 without a sign after a division (1/2x), a number after a factor (x 2), a number
-before a numerical \\frac, a chain of powers, x^23 in LaTeX.
+before a numerical \\frac, a chain of powers, x^23 in LaTeX, D y*x, x^1/2, and what
+only braces hold together, which are not printed.
 """
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
-from certgen.claim import Letters
-from certgen.errors import ExpressionError
+from certgen.notation.ambiguous import braces_hide, is_argument, visible
+from certgen.notation.cursor import Cursor, Names
 from certgen.notation.letters import word_place
-from certgen.notation.source import Source
-from certgen.notation.tokens import CLOSING, Kind, Token, is_latex
+from certgen.notation.tokens import CLOSING, Kind, Token
 from certgen.notation.tree import (
     Derivative,
     Name,
@@ -39,61 +37,8 @@ _STARTS = (Kind.NUMBER, Kind.NAME, Kind.OPEN, Kind.FRACTION, Kind.ROOT, Kind.DER
 _INDEX_DIGITS = 9
 
 
-@dataclass(frozen=True, slots=True)
-class Names:
-    """The names that may occur; no function in an expression without one."""
-
-    variable: str
-    function: str | None = None
-    constants: frozenset[str] = frozenset()
-
-    @classmethod
-    def of(cls, letters: Letters) -> Names:
-        return cls(letters.variable, letters.function)
-
-
-class Parser:
+class Parser(Cursor):
     """One pass over the symbols of a text; every method raises ExpressionError."""
-
-    def __init__(
-        self, source: Source, tokens: list[Token], names: Names, *, latex: bool | None = None
-    ) -> None:
-        self.source = source
-        self.tokens = list(tokens)
-        self.names = names
-        self.latex = is_latex(source.text) if latex is None else latex
-        self.position = 0
-
-    # -- moving on, and errors
-
-    @property
-    def token(self) -> Token:
-        return self.tokens[self.position]
-
-    def advance(self) -> Token:
-        token = self.token
-        if token.error is not None:
-            raise token.error
-        self.position += 1
-        return token
-
-    def error(self, token: Token, message: str, hint: str | None = None) -> ExpressionError:
-        return self.source.error(token.start, token.end, message, hint)
-
-    def unexpected(self, token: Token, wanted: str) -> ExpressionError:
-        """The error for a symbol that cannot stand here."""
-        if token.error is not None:
-            return token.error
-        if token.kind is Kind.END:
-            where = "is empty" if self.position == 0 else "ends too early"
-            return self.error(token, f"the expression {where}", f"expected {wanted}")
-        if token.kind is Kind.PRIME:
-            return self.error(
-                token, "a prime is only read as the derivative mark of the unknown function",
-                "write y' or y'(x)")
-        return self.error(
-            token, f"unexpected '{self.source.text[token.start : token.end][:40]}'",
-            f"expected {wanted}")
 
     # -- the grammar
 
@@ -139,11 +84,13 @@ class Parser:
         factors: list[tuple[Node, int | None]] = [(self.power(), None)]
         operator = "*"
         while self.token.is_operator("*", "/") or self.token.kind in _STARTS:
+            self._check_reach()
             if self.token.is_operator("*", "/"):
                 sign = self.advance()
                 operator = sign.value
                 place = sign.start if operator == "/" else None
                 self._refuse_sign(sign)
+                self._refuse_root(sign, factors[-1][0])
                 first = self.token
             else:
                 self._check_implicit(operator, first, factors[-1][0])
@@ -154,21 +101,18 @@ class Parser:
         return Product(tuple(factors), start, self.tokens[self.position - 1].end,
                        any(has_function(factor) for factor, _ in factors))
 
-    def _refuse_sign(self, sign: Token) -> None:
-        if self.token.is_operator("+", "-"):
-            raise self.error(self.token, f"a sign after '{sign.value}'",
-                             "put the signed factor in parentheses")
-
     def _check_implicit(self, operator: str, first: Token, before: Node) -> None:
         """Refuse products without a sign that can be read in two ways."""
         token = self.token
         if operator == "/":
             function = token.kind is Kind.DERIVATIVE or (
                 token.kind is Kind.NAME and token.value == self.names.function)
-            if not (first.kind is Kind.OPEN and function):
+            if not (first.kind is Kind.OPEN and first.value != "{" and function):
                 raise self.error(
                     token, "a product without a sign after a division is ambiguous",
                     "write (1/2)*x or 1/(2*x) for 1/2x")
+        self._check_argument(before)
+        token = self.tokens[visible(self.tokens, self.position)]
         if token.kind is Kind.NUMBER:
             two = isinstance(before, Number)
             raise self.error(
@@ -180,6 +124,7 @@ class Parser:
     def _refuse_mixed(self, token: Token) -> None:
         """A number before a purely numerical fraction may mean the sum of both."""
         position = self.position
+        self.position = visible(self.tokens, position)
         fraction = self.primary()
         self.position = position
         if isinstance(fraction, Product) and all(
@@ -189,13 +134,15 @@ class Parser:
                              "write the product with '\\cdot' or the sum with '+'")
 
     def power(self) -> Node:
-        start = self.token.start
+        first, start = self.position, self.token.start
         base = self.primary()
         if not self.token.is_operator("^"):
             return base
+        self._refuse_fraction(first)
         self.advance()
         place = self.token.start
         exponent = self._exponent()
+        self._refuse_order(base, place, exponent)
         if self.token.is_operator("^"):
             raise self.error(self.token, "a chain of powers",
                              "an exponent is one number; put a power of a power in "
@@ -210,7 +157,7 @@ class Parser:
                 raise self.error(token, "TeX raises only the first digit",
                                  f"write ^{{{token.value[:40]}}}")
             if token.kind is Kind.NUMBER or (token.kind is Kind.OPEN and token.value == "{"):
-                return self.primary()
+                return self._number() if token.kind is Kind.NUMBER else self._group()
             raise self.unexpected(token, "an exponent in braces, such as x^{-1}")
         if token.is_operator("-"):
             self.advance()
@@ -233,7 +180,7 @@ class Parser:
             case Kind.NUMBER:
                 return self._number()
             case Kind.OPEN:
-                return self._group()
+                return self._braces() if token.value == "{" else self._group()
             case Kind.NAME:
                 return self._name()
             case Kind.DERIVATIVE:
@@ -245,6 +192,19 @@ class Parser:
         if token.is_operator("+", "-"):
             raise self.error(token, "a sign in the middle", "put it in parentheses")
         raise self.unexpected(token, "a number, a letter or '('")
+
+    def _braces(self) -> Node:
+        first = self.position
+        node = self._group()
+        before = self.tokens[first - 1] if first else None
+        inner = self.tokens[visible(self.tokens, first)]
+        parentheses = inner.kind is Kind.OPEN and node.start > inner.start
+        if not parentheses and braces_hide(node, before, self.token):
+            raise self.source.error(
+                self.tokens[first].start, self.tokens[self.position - 1].end,
+                "braces hold together what is printed without them",
+                "write \\left( and \\right)")
+        return node
 
     def _group(self) -> Node:
         opened = self.advance()
@@ -285,6 +245,10 @@ class Parser:
                 return Derivative(token.value, token.start, end)
             return Name(token.value, token.start, end, True)
         self._known(token)
+        if token.value in self.names.constants and is_argument(
+                self.tokens, self.position, self.names.variable):
+            raise self.error(token, f"'{token.value}' may be a function here",
+                             f"write {token.value}*{self.names.variable} for a product")
         return Name(token.value, token.start, end)
 
     def _known(self, token: Token) -> None:
@@ -312,6 +276,7 @@ class Parser:
             self.advance()
             if self.token.kind is Kind.CLOSE:
                 self._close(opened)
+                self.applied = self.position
                 return
         if argument.error is not None:
             raise argument.error
@@ -323,7 +288,11 @@ class Parser:
         token = self.advance()
         if token.value:
             self._check_function(token)
+            if is_argument(self.tokens, self.position, self.names.variable) and (
+                    "(" in self.token.value):
+                self._argument_of_function()
             return Derivative(token.value, token.start, token.end)
+        parentheses = self.token.kind is Kind.OPEN
         node = self.primary()
         if isinstance(node, Derivative):
             raise self.source.error(token.start, node.end, "second order is not supported",
@@ -331,6 +300,8 @@ class Parser:
         if not (isinstance(node, Name) and node.is_function):
             raise self.error(token, "a derivative must stand before the unknown function",
                              "differentiate nothing but y itself")
+        if not parentheses:
+            self.bare = self.position
         return Derivative(node.name, token.start, node.end)
 
     def _check_function(self, token: Token) -> None:
@@ -370,8 +341,8 @@ class Parser:
         token = self.advance()
         index = Number("2", token.start, token.end)
         if not self.latex:
-            if self.token.kind is not Kind.OPEN:
-                raise self.unexpected(self.token, "sqrt(...)")
+            if self.token.kind is not Kind.OPEN or self.token.value != "(":
+                raise self.unexpected(self.token, "sqrt(...); a cube root is x^(1/3)")
             base = self._group()
         else:
             if self.token.kind is Kind.OPEN and self.token.value == "[":

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 import unicodedata
 from dataclasses import dataclass
 
@@ -15,6 +16,7 @@ __all__ = [
     "WORK_LIMIT",
     "Source",
     "describe_character",
+    "without_full_stop",
 ]
 
 LENGTH_LIMIT = 4_000_000
@@ -74,6 +76,8 @@ class Source:
 
 
 _HINTS = {
+    "\x08": "is it a \\b of LaTeX in double quotes? TOML needs '...'",
+    "\x0c": "is it a \\f of LaTeX in double quotes? TOML needs '...'",
     "\u2212": "it is no ASCII minus (copied from a PDF?): write '-'",
     "\u2010": "write '-'",
     "\u2011": "write '-'",
@@ -122,3 +126,15 @@ def describe_character(c: str) -> tuple[str, str | None]:
         return f"unexpected character '{c}'", None
     name = unicodedata.name(c, "")
     return f"unexpected character U+{ord(c):04X} {name}".rstrip(), _hint(c, name)
+
+
+_FULL_STOP = re.compile(r"(?<!\\)[.,;](\s*(?:\$\$?|\\\)|\\\])?\s*)\Z")
+
+
+def without_full_stop(text: str) -> str:
+    """Return the text with the punctuation mark that ends a display as a space.
+
+    One full stop, comma or semicolon, at the very end or before a closing `$`,
+    `\\)` or `\\]`; places in the text stay what they are.
+    """
+    return text[:-20] + _FULL_STOP.sub(r" \1", text[-20:])
