@@ -6,8 +6,8 @@ __all__ = ["CERTIFY", "CHECK", "MAIN", "TYPESET"]
 
 _END = """\
   2    unusable input: malformed, missing, unwritable
-  3    no verdict: a limit was reached (the specification lists them), or certgen
-       found a defect in itself
+  3    no verdict: a limit was reached (the specification lists them), or a
+       defect of certgen was found
   4    a format or kind that this version does not know
   130  interrupted
   With several inputs: the first of 2, 1, 4, 3 that occurs.
@@ -23,6 +23,12 @@ _CHECK_STATUSES = f"""\
 exit status:
   0    every certificate is accepted, that of a refuted claim too
   1    a certificate is rejected (or its verdict is not the one of --require)
+{_END}"""
+
+_TYPESET_STATUSES = f"""\
+exit status:
+  0    every certificate is accepted, and the appendix is written
+  1    a certificate is rejected
 {_END}"""
 
 _STATUSES = f"""\
@@ -113,4 +119,4 @@ examples:
   Every certificate is checked first, with both arithmetics; nothing is written
   unless all are accepted.
 
-{_CHECK_STATUSES}"""
+{_TYPESET_STATUSES}"""

@@ -34,7 +34,7 @@ WALLS: dict[str, tuple[set[str], set[str]]] = {
     "exact": ({"errors", "polynomial"}, {"flint"}),
     "notation": ({"claim", "errors", "polynomial", "exact"}, {"pylatexenc"}),
     "claims_file": ({"claim", "notation", "errors", "files"}, set()),
-    "prover": (DATA | {"exact"}, {"flint", "sympy"}),
+    "prover": (DATA | {"exact"}, {"flint"}),
     "appendix": (DATA | {"notation", "checker", "files"}, {"jinja2", "markupsafe"}),
     "format": (set(), set()),
     "files": ({"errors"}, set()),

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import multiprocessing
-import os
 import statistics
 import subprocess
 import sys
@@ -43,18 +42,26 @@ def seconds_in_child(work: Callable[[], object], limit: float) -> float | None:
     return value
 
 
+# A child inherits the peak memory of the process that starts it, hence a small one.
+_STARTER = """
+import resource, subprocess, sys, time
+begin = time.perf_counter()
+subprocess.run(sys.argv[1:], stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL)
+print(time.perf_counter() - begin, resource.getrusage(resource.RUSAGE_CHILDREN).ru_maxrss)
+"""
+
+
 def command(arguments: list[str], *, runs: int = 5) -> tuple[float, float]:
     """The median wall time and the peak memory (MiB) of a command."""
     times, peak = [], 0.0
     for _ in range(runs):
-        begin = time.perf_counter()
-        with subprocess.Popen(
-            arguments, stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL
-        ) as process:
-            _, _, usage = os.wait4(process.pid, 0)
-            process.returncode = 0
-        times.append(time.perf_counter() - begin)
-        peak = max(peak, usage.ru_maxrss / 1024)
+        done = subprocess.run(
+            [sys.executable, "-c", _STARTER, *arguments],
+            capture_output=True, text=True, check=True,
+        )  # fmt: skip
+        wall, kib = done.stdout.split()
+        times.append(float(wall))
+        peak = max(peak, float(kib) / 1024)
     return statistics.median(times), peak
 
 
