@@ -18,7 +18,7 @@ from certgen.claim import (
     check_id,
     default_id,
 )
-from certgen.errors import ClaimError, InvariantError, LimitError
+from certgen.errors import ClaimError, ExpressionError, InvariantError, LimitError
 from certgen.polynomial import read_polynomial as P
 
 
@@ -154,3 +154,12 @@ def test_default_ids_tell_claims_apart() -> None:
     for identifier in ids:
         check_id(identifier)
         assert re.fullmatch(r"eq-[0-9a-f]{8}", identifier)
+
+
+def test_an_expression_error_says_what_it_knows() -> None:
+    """Where, line, column, message, fragment and hint, each only if it is known."""
+    assert str(ExpressionError("message")) == "message"
+    assert str(ExpressionError("message", column=3)) == "line 1, column 3: message"
+    assert str(ExpressionError("m", where="key", column=3, fragment="y", hint="hint")) == (
+        "key, line 1, column 3: m (at 'y'); hint"
+    )
