@@ -203,6 +203,10 @@ def load(path: str | os.PathLike[str], *, arithmetic: Arithmetic = "both") -> Ce
     from certgen.codec import BYTES_LIMIT
     from certgen.files import read_bytes
 
+    if not isinstance(path, str | os.PathLike):
+        raise ClaimError(
+            f"a certificate is a text, bytes or a path, not {type(path).__name__}"
+        )
     return _accept(read_bytes(path, BYTES_LIMIT), arithmetic)
 
 

@@ -293,3 +293,15 @@ def test_a_file_that_somebody_wrote_is_not_replaced(tmp_path: Path, name: str) -
     assert "years of work" in (tmp_path / name).read_text()
     certgen.certify("y' = y", id="growth").save(tmp_path, replace=True)
     assert "years of work" not in (tmp_path / name).read_text()
+
+
+def test_a_certificate_is_a_text_or_a_path() -> None:
+    """Anything else is an error of the hierarchy, from all three functions."""
+    for use in (certgen.check, certgen.load, certgen.typeset):
+        with pytest.raises(ClaimError, match="not int"):
+            use(3)  # type: ignore[operator]
+
+
+def test_the_package_shows_its_public_names_only() -> None:
+    """`dir(certgen)` is the interface and the version."""
+    assert set(dir(certgen)) == {"__version__", *certgen.__all__}
